@@ -1,0 +1,1 @@
+//! Working fluids and evaporants.

@@ -1,0 +1,1 @@
+//! Heat and mass transfer.
