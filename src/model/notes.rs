@@ -14,7 +14,11 @@ pub struct Assumption {
 impl Assumption {
     /// Builds one from three texts.
     pub fn new(what: impl Into<String>, value: impl Into<String>, effect: impl Into<String>) -> Self {
-        Self { what: what.into(), value: value.into(), effect: effect.into() }
+        Self {
+            what: what.into(),
+            value: value.into(),
+            effect: effect.into(),
+        }
     }
 }
 
@@ -32,7 +36,11 @@ pub struct Fault {
 impl Fault {
     /// Builds one from its parts.
     pub fn new(field: impl Into<String>, code: &'static str, detail: impl Into<String>) -> Self {
-        Self { field: field.into(), code, detail: detail.into() }
+        Self {
+            field: field.into(),
+            code,
+            detail: detail.into(),
+        }
     }
 }
 
