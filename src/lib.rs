@@ -1,14 +1,14 @@
 //! dipcast predicts what an evaporation-driven tipping display does in given air: cycles, stall hours, water.
 //!
-//! Rooms in reading order; data flows down this list and never up.
+//! Rooms in reading order; a room uses the rooms above it and never one below.
 
-pub mod config;
-/// The only room that knows the web framework and the wire format.
-pub mod http;
-/// Bytes in: weather files become hourly series.
-pub mod intake;
 /// The physics: pure, no IO, no clock.
 pub mod model;
+/// Bytes in: weather files become hourly series.
+pub mod intake;
 /// Use cases: read the weather, run the model.
 pub mod service;
+/// The only room that knows the web framework and the wire format.
+pub mod http;
+pub mod config;
 pub mod telemetry;

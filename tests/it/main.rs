@@ -1,4 +1,13 @@
 //! One integration binary.
+#![allow(
+    missing_docs,
+    clippy::unwrap_used,
+    clippy::print_stdout,
+    reason = "tests explain themselves by name and may fail loudly"
+)]
+
+mod house_rules;
+
 #[test]
 fn the_library_links() {
     assert!(dipcast::model::notes::Assumption::new("a", "b", "c").what == "a");
