@@ -1,7 +1,12 @@
 //! A device definition, checked as a whole, and what follows from it.
 
+mod curve;
 mod definition;
+mod hydrostatics;
+mod sphere;
+mod vessel;
 pub use definition::*;
+pub use hydrostatics::Hydrostatics;
 
 use crate::model::fluids::WorkingFluid;
 
@@ -104,23 +109,4 @@ pub struct Cup {
     pub covered_fraction: f64,
     /// Devices of this kind drinking from it.
     pub shared_by: f64,
-}
-
-/// Inner geometry: how high a lifted volume stands above the level left in the body.
-#[derive(Debug, Clone)]
-pub struct Hydrostatics {}
-
-impl Hydrostatics {
-    /// Lifted volume at which the meniscus enters the head [m³].
-    pub fn tube_volume_m3(&self) -> f64 {
-        0.0
-    }
-    /// Effective lift for a lifted volume: upper meniscus minus level left in the body, times the cosine of the lean [m].
-    pub fn lift_m(&self, _lifted_m3: f64) -> f64 {
-        0.0
-    }
-    /// Derivative of [`Self::lift_m`] [1/m²].
-    pub fn lift_slope_1_m2(&self, _lifted_m3: f64) -> f64 {
-        0.0
-    }
 }
