@@ -19,7 +19,7 @@ COPY deploy/config.default.toml deploy/config.default.toml
 RUN find src -name '*.rs' -exec touch {} + \
     && cargo build --release --locked --bin dipcast
 
-FROM debian:bookworm-20261103-slim
+FROM debian:12.11-slim
 # hadolint ignore=DL3008
 RUN apt-get update \
     && apt-get install -y --no-install-recommends ca-certificates \

@@ -3,17 +3,21 @@
 set -euo pipefail
 cd "$(dirname "$0")/.."
 export CI=true CARGO_TERM_COLOR=never
+# shellcheck source=tests/steps/tools.sh
+. tests/steps/tools.sh
+# shellcheck source=tests/steps/server.sh
+. tests/steps/server.sh
+trap 'stop_server || true' EXIT
 
 passed=0
 failed=0
-started=$SECONDS
 
 # step NAME COMMAND...: runs one step, says how long it took, and goes on if it fails.
 step() {
     local name=$1 from=$SECONDS
     shift
     echo "== $name"
-    if "$@"; then
+    if "$@" 2>&1; then
         passed=$((passed + 1))
         echo "== $name: ok, $((SECONDS - from)) s"
     else
@@ -22,15 +26,55 @@ step() {
     fi
 }
 
-rust_tests() {
-    cargo nextest run --profile ci --locked 2>&1
+release_build() { cargo build --quiet --release --locked; }
+
+openapi_document() {
+    curl --silent --fail --output target/steps/openapi.json "$base/openapi.json" \
+        && "$venv/bin/openapi-spec-validator" --schema 3.1 target/steps/openapi.json
 }
 
-step "format" cargo fmt --check
-step "lints" cargo clippy --quiet --locked --all-targets -- -D warnings
-step "unit, integration and reference tests" rust_tests
-step "examples in the docs" cargo test --quiet --locked --doc
+fuzz_the_document() {
+    "$venv/bin/schemathesis" --config-file tests/steps/schemathesis.toml run "$base/openapi.json" \
+        --url "$base" --checks all --max-examples "${1:-40}" --seed 1 --max-time "${2:-240}" --continue-on-failure
+}
 
-echo "steps of tests/run.sh, $((SECONDS - started)) s in all:"
+image_lint() {
+    "$venv/bin/hadolint" Dockerfile && python3 tests/steps/image.py "$binary"
+}
+
+everything() {
+    step "tools" install_tools
+    step "format" cargo fmt --check
+    step "lints" cargo clippy --quiet --locked --all-targets -- -D warnings
+    step "shell scripts" "$venv/bin/shellcheck" --external-sources tests/run.sh .ci/run
+    step "unit, integration and reference tests" cargo nextest run --profile ci --locked
+    step "examples in the docs" cargo test --quiet --locked --doc
+    step "release build" release_build
+    step "image" image_lint
+    step "server starts" start_server
+    step "OpenAPI 3.1" openapi_document
+    step "requests made up from the document" fuzz_the_document
+    step "examples of the README" python3 tests/steps/readme.py README.md "$base" "$binary"
+    step "server stops" stop_server
+}
+
+long() {
+    step "tools" install_tools
+    step "release build" release_build
+    step "property tests, 20,000 cases each" env PROPTEST_CASES=20000 cargo nextest run --release --locked --profile long
+    step "server starts" start_server
+    step "requests made up from the document, at length" fuzz_the_document 400 1200
+    step "memory over 10,000 predictions" python3 tests/steps/endurance.py memory "$base" "$server_pid"
+    step "SIGTERM under load" python3 tests/steps/endurance.py drain "$base" "$server_pid"
+    step "server stops" stop_server
+}
+
+case "${1:-}" in
+    "") everything ;;
+    long) long ;;
+    *) echo "usage: tests/run.sh [long]" && exit 2 ;;
+esac
+
+echo "steps of tests/run.sh, $SECONDS s in all:"
 echo "$passed passed, $failed failed"
 [ "$failed" -eq 0 ]

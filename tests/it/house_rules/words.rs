@@ -9,7 +9,7 @@ use super::source::{self, Source, assert_none};
 fn no_shortcuts_in_code() {
     let mut files = source::sources();
     files.extend(source::parsed("tests"));
-    let complaints: Vec<String> = files.iter().flat_map(|file| shortcuts(file)).collect();
+    let complaints: Vec<String> = files.iter().flat_map(shortcuts).collect();
     assert_none("shortcuts in code:", &complaints);
 }
 
