@@ -50,12 +50,6 @@ everything() {
     step "unit, integration and reference tests" cargo nextest run --profile ci --locked
     step "examples in the docs" cargo test --quiet --locked --doc
     step "release build" release_build
-    step "image" image_lint
-    step "server starts" start_server
-    step "OpenAPI 3.1" openapi_document
-    step "requests made up from the document" fuzz_the_document
-    step "examples of the README" python3 tests/steps/readme.py README.md "$base" "$binary"
-    step "server stops" stop_server
 }
 
 long() {
