@@ -101,6 +101,18 @@ impl RawReadings {
             .chain(present)
             .collect()
     }
+
+    /// Every value column that is there, to be changed.
+    pub(crate) fn columns_mut(&mut self) -> impl Iterator<Item = &mut Vec<f64>> {
+        let optional = [
+            &mut self.relative_humidity,
+            &mut self.dew_point_k,
+            &mut self.pressure_pa,
+            &mut self.wind_speed_m_s,
+            &mut self.shortwave_w_m2,
+        ];
+        std::iter::once(&mut self.air_temp_k).chain(optional.into_iter().filter_map(Option::as_mut))
+    }
 }
 
 /// One thing wrong with weather as it was sent. All of them are reported at once.

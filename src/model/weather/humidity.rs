@@ -1,0 +1,168 @@
+//! Vapour pressure of each reading: from the dew point where it is there, else from relative humidity.
+
+use super::readings::RawReadings;
+use super::series::Sightings;
+use crate::model::air::saturation_pressure_pa;
+
+/// What the humidity of the readings came to.
+pub(super) struct Humidity {
+    /// Partial pressure of water vapour [Pa], NaN = unknown.
+    pub vapour_pressure_pa: Vec<f64>,
+    /// `dew_point` or `relative_humidity`: which served the most readings.
+    pub from: &'static str,
+}
+
+/// Relative humidity and dew point that disagree by more than this are flagged [fraction].
+const DISAGREEMENT: f64 = 0.01;
+/// A dew point above the temperature by more than this is flagged by itself [K].
+const DEW_POINT_EXCESS_K: f64 = 0.5;
+
+#[derive(Default)]
+struct Seen {
+    by_dew_point: usize,
+    by_relative_humidity: usize,
+    fallback: Sightings,
+    disagreement: Sightings,
+    dew_point_above: Sightings,
+    clipped: Sightings,
+}
+
+/// Vapour pressure of each reading; flags contradictions, fallbacks and clipping at saturation.
+pub(super) fn vapour_pressures(raw: &mut RawReadings) -> Humidity {
+    let mut seen = Seen::default();
+    let value = |column: &Option<Vec<f64>>, at: usize| column.as_ref().map_or(f64::NAN, |values| values[at]);
+    let vapour_pressure_pa = (0..raw.len())
+        .map(|at| {
+            let (dew_point_k, rh) = (value(&raw.dew_point_k, at), value(&raw.relative_humidity, at));
+            seen.vapour_pressure(raw.air_temp_k[at], dew_point_k, rh, raw.row[at] as usize)
+        })
+        .collect();
+    let from = if seen.by_dew_point >= seen.by_relative_humidity.max(1) {
+        "dew_point"
+    } else {
+        "relative_humidity"
+    };
+    seen.flag_into(raw);
+    Humidity {
+        vapour_pressure_pa,
+        from,
+    }
+}
+
+impl Seen {
+    fn vapour_pressure(&mut self, temp_k: f64, dew_point_k: f64, rh: f64, row: usize) -> f64 {
+        match (dew_point_k.is_nan(), rh.is_nan()) {
+            (false, _) => self.by_dew_point(temp_k, dew_point_k, rh, row),
+            (true, false) => self.by_relative_humidity(temp_k, rh, row),
+            (true, true) => f64::NAN,
+        }
+    }
+
+    fn by_dew_point(&mut self, temp_k: f64, dew_point_k: f64, rh: f64, row: usize) -> f64 {
+        self.by_dew_point += 1;
+        if dew_point_k > temp_k {
+            let kind = if dew_point_k > temp_k + DEW_POINT_EXCESS_K {
+                &mut self.dew_point_above
+            } else {
+                &mut self.clipped
+            };
+            kind.add(row);
+            return saturation_pressure_pa(temp_k);
+        }
+        let vapour_pa = saturation_pressure_pa(dew_point_k);
+        // With a missing temperature or humidity the comparison is NaN, and not a disagreement.
+        if !rh.is_nan() && (vapour_pa / saturation_pressure_pa(temp_k) - rh).abs() > DISAGREEMENT {
+            self.disagreement.add(row);
+        }
+        vapour_pa
+    }
+
+    fn by_relative_humidity(&mut self, temp_k: f64, rh: f64, row: usize) -> f64 {
+        self.by_relative_humidity += 1;
+        self.fallback.add(row);
+        if rh > 1.0 {
+            self.clipped.add(row);
+        }
+        rh.min(1.0) * saturation_pressure_pa(temp_k)
+    }
+
+    fn flag_into(self, raw: &mut RawReadings) {
+        let flags = &mut raw.flags;
+        if raw.dew_point_k.is_some() {
+            let detail = "rows without a dew point, in which the relative humidity was used";
+            self.fallback
+                .flag_into(flags, "humidity_from_relative_humidity", detail);
+        }
+        let detail = "rows in which relative humidity and dew point differ by more than 1 point of humidity; the dew point was \
+                      used, since relative humidity is often rounded to whole percent";
+        self.disagreement.flag_into(flags, "humidity_disagrees", detail);
+        let detail =
+            "rows with a dew point more than 0.5 K above the temperature, which cannot be; taken as saturated air";
+        self.dew_point_above
+            .flag_into(flags, "dew_point_above_temperature", detail);
+        let detail = "rows slightly above saturation (relative humidity 100 to 105 %, or dew point up to 0.5 K above the \
+                      temperature); taken as saturated air";
+        self.clipped.flag_into(flags, "humidity_clipped", detail);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn raw(temp_c: f64, dew_c: f64, rh: f64) -> RawReadings {
+        RawReadings {
+            air_temp_k: vec![temp_c + 273.15],
+            dew_point_k: Some(vec![dew_c + 273.15]),
+            relative_humidity: Some(vec![rh]),
+            ..RawReadings::hourly(0, 1)
+        }
+    }
+
+    fn codes(raw: &RawReadings) -> Vec<&'static str> {
+        raw.flags.iter().map(|flag| flag.code).collect()
+    }
+
+    #[test]
+    fn the_dew_point_wins_and_a_contradiction_is_flagged() {
+        let mut sent = raw(20.0, 10.0, 0.60);
+        let humidity = vapour_pressures(&mut sent);
+        assert_eq!(humidity.vapour_pressure_pa[0], saturation_pressure_pa(283.15));
+        assert_eq!((humidity.from, codes(&sent)), ("dew_point", vec!["humidity_disagrees"]));
+    }
+
+    #[test]
+    fn a_missing_dew_point_falls_back_row_by_row() {
+        let mut sent = raw(20.0, f64::NAN, 0.60);
+        let humidity = vapour_pressures(&mut sent);
+        assert_eq!(humidity.vapour_pressure_pa[0], 0.6 * saturation_pressure_pa(293.15));
+        assert_eq!(
+            (humidity.from, codes(&sent)),
+            ("relative_humidity", vec!["humidity_from_relative_humidity"])
+        );
+    }
+
+    #[test]
+    fn nothing_stays_above_saturation_and_that_is_said() {
+        for (dew_c, code) in [(20.3, "humidity_clipped"), (21.0, "dew_point_above_temperature")] {
+            let mut sent = raw(20.0, dew_c, f64::NAN);
+            assert_eq!(
+                vapour_pressures(&mut sent).vapour_pressure_pa[0],
+                saturation_pressure_pa(293.15)
+            );
+            assert_eq!(codes(&sent), [code]);
+        }
+        let mut sent = raw(20.0, f64::NAN, 1.04);
+        assert_eq!(
+            vapour_pressures(&mut sent).vapour_pressure_pa[0],
+            saturation_pressure_pa(293.15)
+        );
+        assert!(codes(&sent).contains(&"humidity_clipped"));
+    }
+
+    #[test]
+    fn missing_stays_missing() {
+        assert!(vapour_pressures(&mut raw(20.0, f64::NAN, f64::NAN)).vapour_pressure_pa[0].is_nan());
+        assert!(vapour_pressures(&mut raw(f64::NAN, f64::NAN, 0.5)).vapour_pressure_pa[0].is_nan());
+    }
+}

@@ -1,0 +1,200 @@
+//! From readings to hours, in the order in which it is done.
+
+use super::gaps::fill;
+use super::grid::Grid;
+use super::humidity::vapour_pressures;
+use super::options::RegulariseOptions;
+use super::order::{check_repeats, sort_by_time};
+use super::pressure::{HourlyPressure, Said, of_station};
+use super::readings::{RawReadings, WeatherFault};
+use super::screen::{flag_spikes, flag_stuck, screen};
+use super::series::{Flag, HourlySeries, SeriesReport, Sightings};
+use super::steps::flag_steps;
+use super::suspicion::suspicions;
+use super::zone::wall_clock_s;
+use crate::model::air::saturation_pressure_pa;
+
+/// Lays readings on hours: sorts, screens, takes vapour pressure from dew point or relative humidity, averages what shares
+/// an hour, fills short gaps in temperature and vapour pressure, finds a station pressure for every hour, and says all of
+/// it in `report` and `assumptions`.
+///
+/// # Errors
+/// Every fault found: columns of unequal length, no readings, no humidity, times outside 1800 to 2200, contradictory rows
+/// of one time, columns that look swapped or in another unit, too long a span, too large a share of unknown hours.
+pub fn regularise(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeries, Vec<WeatherFault>> {
+    let mut faults = options.faults();
+    faults.extend(shape_faults(&raw));
+    refuse(faults)?;
+    let mut faults = time_faults(&raw);
+    let suspicious = suspicions(&raw);
+    if options.accept_suspicious {
+        raw.flags.extend(suspicious.into_iter().map(accepted));
+    } else {
+        faults.extend(suspicious);
+    }
+    sort_by_time(&mut raw);
+    faults.extend(check_repeats(&mut raw));
+    refuse(faults)?;
+    screen(&mut raw);
+    flag_stuck(&mut raw);
+    flag_spikes(&mut raw);
+    hours(raw, options)
+}
+
+fn refuse(faults: Vec<WeatherFault>) -> Result<(), Vec<WeatherFault>> {
+    if faults.is_empty() { Ok(()) } else { Err(faults) }
+}
+
+fn accepted(fault: WeatherFault) -> Flag {
+    Flag {
+        code: fault.code,
+        count: 1,
+        rows: Vec::new(),
+        detail: format!("accepted as sent: {}", fault.detail),
+    }
+}
+
+fn shape_faults(raw: &RawReadings) -> Vec<WeatherFault> {
+    if raw.is_empty() {
+        return vec![WeatherFault::whole(
+            "no_readings",
+            "expected at least one reading; found none",
+        )];
+    }
+    let mut faults = Vec::new();
+    let lengths = raw.columns().into_iter().map(|(name, values)| (name, values.len()));
+    for (name, length) in lengths
+        .chain([("row", raw.row.len())])
+        .filter(|(_, length)| *length != raw.len())
+    {
+        let detail = format!("expected {} values, one for each time; found {length}", raw.len());
+        faults.push(WeatherFault::column(name, "unequal_lengths", detail));
+    }
+    let some = |column: &Option<Vec<f64>>| column.as_ref().is_some_and(|values| values.iter().any(|v| !v.is_nan()));
+    if !raw.air_temp_k.iter().any(|t| !t.is_nan()) {
+        faults.push(WeatherFault::column(
+            "air_temperature",
+            "no_temperature",
+            "expected air temperatures; all are missing",
+        ));
+    }
+    if !some(&raw.relative_humidity) && !some(&raw.dew_point_k) {
+        let detail = "expected relative humidity or dew point; there is neither, or all values are missing";
+        faults.push(WeatherFault::whole("no_humidity", detail));
+    }
+    faults
+}
+
+fn time_faults(raw: &RawReadings) -> Vec<WeatherFault> {
+    let bound = |year: i64| wall_clock_s(year, 1, 1, 0, 0, 0).unwrap_or_default();
+    let (from, to) = (bound(1800), bound(2200));
+    let outside = |&at: &usize| raw.time_unix_s[at] < from || raw.time_unix_s[at] >= to;
+    let fault = |at: usize| {
+        let detail = format!(
+            "expected a time from 1800 to 2200; found {}. Seconds and milliseconds mixed up, or a wrong year?",
+            super::zone::instant_text(raw.time_unix_s[at])
+        );
+        WeatherFault::row(raw.row[at] as usize, Some("time"), "time_out_of_range", detail)
+    };
+    (0..raw.len())
+        .filter(outside)
+        .take(super::series::ROWS_NAMED)
+        .map(fault)
+        .collect()
+}
+
+/// The second half: everything that needs the hour grid.
+fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeries, Vec<WeatherFault>> {
+    let grid = Grid::lay(&raw, options.max_hours).map_err(|fault| vec![fault])?;
+    let humidity = vapour_pressures(&mut raw);
+    let rows = grid.first_rows(&raw.row);
+    let mut assumptions = std::mem::take(&mut raw.assumptions);
+    assumptions.extend(grid.assumptions(&raw));
+    let mut flags = std::mem::take(&mut raw.flags);
+
+    let mut temp_k = grid.means(&raw.air_temp_k);
+    let mut vapour_pressure_pa = grid.means(&humidity.vapour_pressure_pa);
+    flag_steps(&temp_k, &rows, &mut flags);
+    let temp_filled = fill(&mut temp_k, options.max_gap_hours);
+    let vapour_filled = fill(&mut vapour_pressure_pa, options.max_gap_hours);
+    clip_at_saturation(&temp_k, &mut vapour_pressure_pa, &mut flags);
+    let known: Vec<bool> = temp_k
+        .iter()
+        .zip(&vapour_pressure_pa)
+        .map(|(t, e)| !t.is_nan() && !e.is_nan())
+        .collect();
+
+    let hourly = HourlyPressure {
+        read_pa: raw.pressure_pa.as_deref().map(|values| grid.means(values)),
+        is_sea_level: raw.pressure_is_sea_level,
+        elevation_m: options.elevation_m,
+        temp_k: &temp_k,
+        vapour_pressure_pa: &vapour_pressure_pa,
+        row_of_hour: &rows,
+    };
+    let pressure_pa = of_station(
+        hourly,
+        &mut Said {
+            flags: &mut flags,
+            assumptions: &mut assumptions,
+        },
+    );
+    let outdoor = |column: &Option<Vec<f64>>| {
+        let mut values = grid.means(column.as_deref()?);
+        fill(&mut values, options.max_gap_hours);
+        Some(values)
+    };
+    let filled = (0..grid.hours)
+        .filter(|&at| known[at] && (temp_filled[at] || vapour_filled[at]))
+        .count();
+    let report = SeriesReport {
+        readings: raw.len(),
+        hours_filled: filled,
+        hours_unknown: known.iter().filter(|known| !**known).count(),
+        humidity_from: humidity.from,
+        flags,
+    };
+    check_unknown(&report, grid.hours, options)?;
+    Ok(HourlySeries {
+        start_unix_s: grid.start_unix_s,
+        stamp: raw.label.stamp(),
+        wind_speed_m_s: outdoor(&raw.wind_speed_m_s),
+        shortwave_w_m2: outdoor(&raw.shortwave_w_m2),
+        temp_k,
+        vapour_pressure_pa,
+        pressure_pa,
+        known,
+        report,
+        assumptions,
+    })
+}
+
+/// Means and interpolated values of moist air can lie a little above the saturation curve, which is hollow.
+fn clip_at_saturation(temp_k: &[f64], vapour_pressure_pa: &mut [f64], flags: &mut Vec<Flag>) {
+    let mut clipped = Sightings::default();
+    for (hour, (temp, vapour)) in temp_k.iter().zip(vapour_pressure_pa).enumerate() {
+        let saturation = saturation_pressure_pa(*temp);
+        if *vapour > saturation {
+            clipped.add(hour + 1);
+            *vapour = saturation;
+        }
+    }
+    let detail = "hours (counted from 1) whose averaged or interpolated vapour pressure lay above saturation; taken as saturated";
+    clipped.flag_into(flags, "hour_clipped_at_saturation", detail);
+}
+
+fn check_unknown(report: &SeriesReport, hours: usize, options: &RegulariseOptions) -> Result<(), Vec<WeatherFault>> {
+    let share = report.hours_unknown as f64 / hours as f64;
+    if share <= options.max_unknown_share {
+        return Ok(());
+    }
+    let detail = format!(
+        "{} of {hours} hours ({:.1} %) are unknown after filling gaps of up to {} hours; at most {:.1} % are taken. Send the \
+         missing hours, or raise max_unknown_share (then these hours are reported as unknown) or max_gap_hours",
+        report.hours_unknown,
+        share * 100.0,
+        options.max_gap_hours,
+        options.max_unknown_share * 100.0
+    );
+    Err(vec![WeatherFault::whole("too_much_unknown", detail)])
+}
