@@ -107,66 +107,71 @@ fn time_faults(raw: &RawReadings) -> Vec<WeatherFault> {
 fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeries, Vec<WeatherFault>> {
     let grid = Grid::lay(&raw, options.max_hours).map_err(|fault| vec![fault])?;
     let humidity = vapour_pressures(&mut raw);
+    raw.assumptions.extend(grid.assumptions(&raw));
     let rows = grid.first_rows(&raw.row);
-    let mut assumptions = std::mem::take(&mut raw.assumptions);
-    assumptions.extend(grid.assumptions(&raw));
-    let mut flags = std::mem::take(&mut raw.flags);
-
-    let mut temp_k = grid.means(&raw.air_temp_k);
-    let mut vapour_pressure_pa = grid.means(&humidity.vapour_pressure_pa);
-    flag_steps(&temp_k, &rows, &mut flags);
-    let temp_filled = fill(&mut temp_k, options.max_gap_hours);
-    let vapour_filled = fill(&mut vapour_pressure_pa, options.max_gap_hours);
-    clip_at_saturation(&temp_k, &mut vapour_pressure_pa, &mut flags);
-    let known: Vec<bool> = temp_k
+    let air = HourlyAir::of(
+        &grid,
+        &mut raw,
+        &humidity.vapour_pressure_pa,
+        &rows,
+        options.max_gap_hours,
+    );
+    let pressure_pa = hourly_pressure(&grid, &mut raw, &air, &rows, options.elevation_m);
+    let known: Vec<bool> = air
+        .temp_k
         .iter()
-        .zip(&vapour_pressure_pa)
+        .zip(&air.vapour_pa)
         .map(|(t, e)| !t.is_nan() && !e.is_nan())
         .collect();
-
-    let hourly = HourlyPressure {
-        read_pa: raw.pressure_pa.as_deref().map(|values| grid.means(values)),
-        is_sea_level: raw.pressure_is_sea_level,
-        elevation_m: options.elevation_m,
-        temp_k: &temp_k,
-        vapour_pressure_pa: &vapour_pressure_pa,
-        row_of_hour: &rows,
+    let report = SeriesReport {
+        readings: raw.len(),
+        hours_filled: (0..grid.hours).filter(|&at| known[at] && air.filled[at]).count(),
+        hours_unknown: known.iter().filter(|known| !**known).count(),
+        humidity_from: humidity.from,
+        flags: std::mem::take(&mut raw.flags),
     };
-    let pressure_pa = of_station(
-        hourly,
-        &mut Said {
-            flags: &mut flags,
-            assumptions: &mut assumptions,
-        },
-    );
+    check_unknown(&report, grid.hours, options)?;
     let outdoor = |column: &Option<Vec<f64>>| {
         let mut values = grid.means(column.as_deref()?);
         fill(&mut values, options.max_gap_hours);
         Some(values)
     };
-    let filled = (0..grid.hours)
-        .filter(|&at| known[at] && (temp_filled[at] || vapour_filled[at]))
-        .count();
-    let report = SeriesReport {
-        readings: raw.len(),
-        hours_filled: filled,
-        hours_unknown: known.iter().filter(|known| !**known).count(),
-        humidity_from: humidity.from,
-        flags,
-    };
-    check_unknown(&report, grid.hours, options)?;
     Ok(HourlySeries {
         start_unix_s: grid.start_unix_s,
         stamp: raw.label.stamp(),
         wind_speed_m_s: outdoor(&raw.wind_speed_m_s),
         shortwave_w_m2: outdoor(&raw.shortwave_w_m2),
-        temp_k,
-        vapour_pressure_pa,
+        temp_k: air.temp_k,
+        vapour_pressure_pa: air.vapour_pa,
         pressure_pa,
         known,
         report,
-        assumptions,
+        assumptions: raw.assumptions,
     })
+}
+
+/// Temperature and vapour pressure of the hours, gaps filled where they may be.
+struct HourlyAir {
+    temp_k: Vec<f64>,
+    vapour_pa: Vec<f64>,
+    filled: Vec<bool>,
+}
+
+impl HourlyAir {
+    fn of(grid: &Grid, raw: &mut RawReadings, vapour_pa: &[f64], rows: &[u32], max_gap_hours: usize) -> Self {
+        let (mut temp_k, mut vapour_pa) = (grid.means(&raw.air_temp_k), grid.means(vapour_pa));
+        flag_steps(&temp_k, rows, &mut raw.flags);
+        let mut filled = fill(&mut temp_k, max_gap_hours);
+        for (filled, also) in filled.iter_mut().zip(fill(&mut vapour_pa, max_gap_hours)) {
+            *filled |= also;
+        }
+        clip_at_saturation(&temp_k, &mut vapour_pa, &mut raw.flags);
+        Self {
+            temp_k,
+            vapour_pa,
+            filled,
+        }
+    }
 }
 
 /// Means and interpolated values of moist air can lie a little above the saturation curve, which is hollow.
@@ -181,6 +186,30 @@ fn clip_at_saturation(temp_k: &[f64], vapour_pressure_pa: &mut [f64], flags: &mu
     }
     let detail = "hours (counted from 1) whose averaged or interpolated vapour pressure lay above saturation; taken as saturated";
     clipped.flag_into(flags, "hour_clipped_at_saturation", detail);
+}
+
+fn hourly_pressure(
+    grid: &Grid,
+    raw: &mut RawReadings,
+    air: &HourlyAir,
+    row_of_hour: &[u32],
+    elevation_m: Option<f64>,
+) -> Vec<f64> {
+    let hourly = HourlyPressure {
+        read_pa: raw.pressure_pa.as_deref().map(|values| grid.means(values)),
+        is_sea_level: raw.pressure_is_sea_level,
+        elevation_m,
+        temp_k: &air.temp_k,
+        vapour_pressure_pa: &air.vapour_pa,
+        row_of_hour,
+    };
+    of_station(
+        hourly,
+        &mut Said {
+            flags: &mut raw.flags,
+            assumptions: &mut raw.assumptions,
+        },
+    )
 }
 
 fn check_unknown(report: &SeriesReport, hours: usize, options: &RegulariseOptions) -> Result<(), Vec<WeatherFault>> {
