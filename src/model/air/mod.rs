@@ -13,8 +13,8 @@ pub use saturation::{
     dew_point_k, saturation_pressure_ice_pa, saturation_pressure_pa, saturation_slope_ice_pa_k, saturation_slope_pa_k,
 };
 pub use transport::{
-    diffusivity_ethanol_m2_s, diffusivity_water_m2_s, dynamic_viscosity_pa_s, latent_heat_sublimation_j_kg,
-    latent_heat_vaporisation_j_kg, specific_heat_j_kgk, thermal_conductivity_w_mk,
+    ETHANOL_OVER_WATER_DIFFUSIVITY, diffusivity_ethanol_m2_s, diffusivity_water_m2_s, dynamic_viscosity_pa_s,
+    latent_heat_sublimation_j_kg, latent_heat_vaporisation_j_kg, specific_heat_j_kgk, thermal_conductivity_w_mk,
 };
 pub use wet_bulb::{wet_bulb_ice_k, wet_bulb_k};
 

@@ -22,7 +22,8 @@ pub fn specific_heat_j_kgk() -> f64 {
 /// Diffusivity of water vapour in air [m2/s] at a temperature [K, 240 to 380] and pressure [Pa] [Massman1998].
 #[inline]
 pub fn diffusivity_water_m2_s(temp_k: f64, pressure_pa: f64) -> f64 {
-    2.178e-5 * (temp_k / 273.15).powf(1.81) * (101_325.0 / pressure_pa)
+    // exp and ln: the library's exact power costs twice as much.
+    2.178e-5 * (1.81 * (temp_k / 273.15).ln()).exp() * (101_325.0 / pressure_pa)
 }
 
 /// Diffusivity of ethanol vapour in air [m2/s] at a temperature [K, 240 to 380] and pressure [Pa].
@@ -31,8 +32,11 @@ pub fn diffusivity_water_m2_s(temp_k: f64, pressure_pa: f64) -> f64 {
 /// reviewed in air.
 #[inline]
 pub fn diffusivity_ethanol_m2_s(temp_k: f64, pressure_pa: f64) -> f64 {
-    1.02e-5 * (temp_k / 273.15).powf(1.81) * (101_325.0 / pressure_pa)
+    ETHANOL_OVER_WATER_DIFFUSIVITY * diffusivity_water_m2_s(temp_k, pressure_pa)
 }
+
+/// Diffusivity of ethanol vapour in air over that of water vapour, at any temperature and pressure [Perry8] [Massman1998].
+pub const ETHANOL_OVER_WATER_DIFFUSIVITY: f64 = 1.02e-5 / 2.178e-5;
 
 /// Latent heat of vaporisation of water [J/kg] at a temperature [K, 233 to 343].
 ///

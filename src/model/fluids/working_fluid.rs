@@ -119,7 +119,8 @@ impl WorkingFluid {
             let excess = self.vapour.log_pressure(temp_k) - target;
             let shrink = 1.0 + excess / (self.vapour.log_slope(temp_k) * temp_k);
             let next = temp_k / shrink.clamp(0.5, 2.0);
-            if (next - temp_k).abs() <= 1e-13 * temp_k {
+            // The step squares its error, so one below 1e-7 leaves nothing that a double can hold.
+            if (next - temp_k).abs() <= 1e-7 * temp_k {
                 return next;
             }
             temp_k = next;

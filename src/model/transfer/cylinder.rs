@@ -19,3 +19,22 @@ pub fn cylinder_heat_w_m2k(diameter_m: f64, length_m: f64, surface_temp_k: f64, 
     let forced = cylinder_nusselt_crossflow(reynolds, film.prandtl) * film.conductivity / diameter_m;
     cube_sum(natural, forced)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn faster_air_and_larger_difference_carry_more_heat() {
+        let air = Air::from_relative_humidity(295.15, 0.5, 101_325.0);
+        let mut last = 0.0;
+        for speed in [0.0, 0.05, 0.1, 0.3, 1.0, 3.0] {
+            let heat = cylinder_heat_w_m2k(0.007, 0.11, 293.15, &air, speed);
+            assert!(heat > last, "{speed}");
+            last = heat;
+        }
+        let near = cylinder_heat_w_m2k(0.007, 0.11, 294.15, &air, 0.0);
+        let far = cylinder_heat_w_m2k(0.007, 0.11, 285.15, &air, 0.0);
+        assert!(far > near && near > 0.0);
+    }
+}

@@ -1,9 +1,9 @@
 //! The film around a wet or dry sphere, and the vapour that crosses it.
 
 use super::FilmAir;
-use super::correlations::{cube_sum, forced_speed_part, sphere_nusselt_natural};
+use super::correlations::SphereDrive;
 use crate::model::air::{
-    Air, GAS_CONSTANT_J_MOLK, MOLAR_MASS_ETHANOL_KG_MOL, MOLAR_MASS_WATER_KG_MOL, diffusivity_ethanol_m2_s,
+    Air, ETHANOL_OVER_WATER_DIFFUSIVITY, GAS_CONSTANT_J_MOLK, MOLAR_MASS_ETHANOL_KG_MOL, MOLAR_MASS_WATER_KG_MOL,
     diffusivity_water_m2_s, mixture_density_kg_m3,
 };
 
@@ -14,7 +14,7 @@ pub struct SphereFilm {
     pub heat_w_m2k: f64,
     /// Mass transfer coefficient of water vapour, Sh D / d [m/s].
     pub water_m_s: f64,
-    /// Mass transfer coefficient of ethanol vapour, Sh D / d [m/s].
+    /// Mass transfer coefficient of ethanol vapour, Sh D / d [m/s]; 0 when the surface holds none, for nothing can cross then.
     pub ethanol_m_s: f64,
 }
 
@@ -44,17 +44,18 @@ pub fn sphere_film(
     let film = FilmAir::at(film_k, air.pressure_pa);
     let surface_density = mixture_density_kg_m3(surface_temp_k, bounded(surface_vapours_pa, air), air.pressure_pa);
     let grashof = film.grashof(diameter_m, surface_density - air.density_kg_m3());
-    let forced = forced_speed_part(speed_m_s * diameter_m / film.viscosity);
-    let number = |prandtl_or_schmidt: f64| {
-        let natural = sphere_nusselt_natural(grashof * prandtl_or_schmidt, prandtl_or_schmidt) - 2.0;
-        2.0 + cube_sum(natural, forced * prandtl_or_schmidt.powf(0.4))
-    };
+    let drive = SphereDrive::new(grashof, speed_m_s * diameter_m / film.viscosity);
+    let mass = |diffusivity: f64| drive.nusselt(film.viscosity / diffusivity) * diffusivity / diameter_m;
     let water = diffusivity_water_m2_s(film_k, air.pressure_pa);
-    let ethanol = diffusivity_ethanol_m2_s(film_k, air.pressure_pa);
+    let has_ethanol = surface_vapours_pa[1] > 0.0;
     SphereFilm {
-        heat_w_m2k: number(film.prandtl) * film.conductivity / diameter_m,
-        water_m_s: number(film.viscosity / water) * water / diameter_m,
-        ethanol_m_s: number(film.viscosity / ethanol) * ethanol / diameter_m,
+        heat_w_m2k: drive.nusselt(film.prandtl) * film.conductivity / diameter_m,
+        water_m_s: mass(water),
+        ethanol_m_s: if has_ethanol {
+            mass(water * ETHANOL_OVER_WATER_DIFFUSIVITY)
+        } else {
+            0.0
+        },
     }
 }
 
@@ -95,5 +96,102 @@ fn log_mean_share(u: f64) -> f64 {
         1.0 - u * (0.5 - u * (1.0 / 3.0 - 0.25 * u))
     } else {
         u.ln_1p() / u
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::model::air::saturation_pressure_pa;
+    use crate::model::transfer::{blend, sphere_nusselt_forced, sphere_nusselt_natural};
+
+    fn room() -> Air {
+        Air::from_relative_humidity(295.15, 0.5, 101_325.0)
+    }
+
+    #[test]
+    fn one_vapour_alone_follows_the_log_form() {
+        let (air, film) = (
+            room(),
+            SphereFilm {
+                heat_w_m2k: 10.0,
+                water_m_s: 0.009,
+                ethanol_m_s: 0.006,
+            },
+        );
+        for surface in [100.0, 1300.0, 1321.0, 2000.0, 20_000.0, 90_000.0] {
+            let flux = vapour_fluxes_kg_m2s(&film, 293.0, [surface, 0.0], &air)[0];
+            let rest = ((air.pressure_pa - air.vapour_pressure_pa) / (air.pressure_pa - surface)).ln();
+            let printed =
+                film.water_m_s * MOLAR_MASS_WATER_KG_MOL * air.pressure_pa / (GAS_CONSTANT_J_MOLK * 293.0) * rest;
+            assert!((flux / printed - 1.0).abs() < 1e-9, "{surface}: {flux} {printed}");
+        }
+    }
+
+    #[test]
+    fn equal_vapour_pressures_exchange_nothing() {
+        let air = room();
+        let surface = [air.vapour_pressure_pa, 0.0];
+        let film = sphere_film(0.027, 290.0, surface, &air, 0.1);
+        assert_eq!(vapour_fluxes_kg_m2s(&film, 292.0, surface, &air), [0.0, 0.0]);
+    }
+
+    #[test]
+    fn vapours_condense_and_evaporate_side_by_side() {
+        let air = room();
+        let surface = [300.0, 2000.0];
+        let film = sphere_film(0.027, 280.0, surface, &air, 0.1);
+        let [water, ethanol] = vapour_fluxes_kg_m2s(&film, 287.0, surface, &air);
+        assert!(water < 0.0 && ethanol > 0.0);
+    }
+
+    #[test]
+    fn a_boiling_surface_stays_finite() {
+        let air = room();
+        for surface in [[101_325.0, 0.0], [60_000.0, 60_000.0], [1e9, 0.0]] {
+            let film = sphere_film(0.027, 373.15, surface, &air, 0.1);
+            let fluxes = vapour_fluxes_kg_m2s(&film, 330.0, surface, &air);
+            assert!(film.heat_w_m2k.is_finite() && fluxes.iter().all(|flux| flux.is_finite() && *flux >= 0.0));
+        }
+    }
+
+    #[test]
+    fn buoyancy_sees_the_vapours() {
+        let air = Air::from_relative_humidity(295.15, 0.1, 101_325.0);
+        // Surface temperature at which cooling and added water vapour cancel: only conduction is left.
+        let (mut low, mut high) = (280.0, 295.15);
+        for _ in 0..80 {
+            let middle = 0.5 * (low + high);
+            let wet = mixture_density_kg_m3(middle, [saturation_pressure_pa(middle), 0.0], air.pressure_pa);
+            if wet > air.density_kg_m3() {
+                low = middle
+            } else {
+                high = middle
+            }
+        }
+        let still = sphere_film(0.027, low, [saturation_pressure_pa(low), 0.0], &air, 0.0);
+        let dry = sphere_film(0.027, low, [air.vapour_pressure_pa, 0.0], &air, 0.0);
+        let laden = sphere_film(0.027, low, [saturation_pressure_pa(low), 2500.0], &air, 0.0);
+        assert!(still.heat_w_m2k < 0.7 * dry.heat_w_m2k, "{still:?} {dry:?}");
+        assert!(laden.heat_w_m2k > dry.heat_w_m2k);
+    }
+
+    #[test]
+    fn the_film_is_the_public_laws_put_together() {
+        let (air, surface_k, surface) = (room(), 290.15, [1900.0, 1200.0]);
+        let film = sphere_film(0.027, surface_k, surface, &air, 0.25);
+        let dry = FilmAir::at(0.5 * (surface_k + air.temp_k), air.pressure_pa);
+        let difference = mixture_density_kg_m3(surface_k, surface, air.pressure_pa) - air.density_kg_m3();
+        let grashof = 9.806_65 * 0.027_f64.powi(3) * difference.abs() / (dry.density * dry.viscosity.powi(2));
+        let number = |pr: f64| {
+            let forced = sphere_nusselt_forced(0.25 * 0.027 / dry.viscosity, pr);
+            blend(sphere_nusselt_natural(grashof * pr, pr), forced)
+        };
+        let film_k = 0.5 * (surface_k + air.temp_k);
+        let ethanol = crate::model::air::diffusivity_ethanol_m2_s(film_k, air.pressure_pa);
+        let expected = number(dry.viscosity / ethanol) * ethanol / 0.027;
+        assert!((film.ethanol_m_s / expected - 1.0).abs() < 1e-12);
+        let expected = number(dry.prandtl) * dry.conductivity / 0.027;
+        assert!((film.heat_w_m2k / expected - 1.0).abs() < 1e-12);
     }
 }
