@@ -59,6 +59,36 @@ pub struct Forcing {
     pub body_absorbed_w: f64,
 }
 
+impl Forcing {
+    /// Settled air without sun or lamp, surroundings at air temperature.
+    pub fn still(air: Air, air_speed_m_s: f64) -> Self {
+        Self {
+            air,
+            air_speed_m_s,
+            surroundings_k: air.temp_k,
+            head_absorbed_w: 0.0,
+            body_absorbed_w: 0.0,
+        }
+    }
+
+    /// On the straight line to another forcing, `share` of the way.
+    pub fn towards(&self, to: &Forcing, share: f64) -> Self {
+        let mix = |a: f64, b: f64| a + share * (b - a);
+        let air = Air {
+            temp_k: mix(self.air.temp_k, to.air.temp_k),
+            vapour_pressure_pa: mix(self.air.vapour_pressure_pa, to.air.vapour_pressure_pa),
+            pressure_pa: mix(self.air.pressure_pa, to.air.pressure_pa),
+        };
+        Self {
+            air,
+            air_speed_m_s: mix(self.air_speed_m_s, to.air_speed_m_s),
+            surroundings_k: mix(self.surroundings_k, to.surroundings_k),
+            head_absorbed_w: mix(self.head_absorbed_w, to.head_absorbed_w),
+            body_absorbed_w: mix(self.body_absorbed_w, to.body_absorbed_w),
+        }
+    }
+}
+
 /// The forcing of one hour, linear in between.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct HourForcing {
@@ -68,6 +98,13 @@ pub struct HourForcing {
     pub end: Forcing,
     /// False where the weather is missing.
     pub known: bool,
+}
+
+impl HourForcing {
+    /// The forcing at a second of the hour.
+    pub fn at(&self, second: f64) -> Forcing {
+        self.start.towards(&self.end, second / 3600.0)
+    }
 }
 
 /// Factors on uncertain coefficients, 1 in the nominal run; bands vary them.
@@ -105,6 +142,14 @@ pub struct State {
     pub cup_temp_k: f64,
     /// The felt dried out while the device stood still: it waits for a person.
     pub dried_out: bool,
+    /// Felt or cup is frozen.
+    pub iced: bool,
+    /// How far a resolved dip ran past the end of the last stretch [s].
+    pub(super) ahead_s: f64,
+    /// Body less air temperature in the last periodic cycle: where the next search starts [K].
+    pub(super) last_lag_k: Option<f64>,
+    /// The averaged answer at the end of the last stretch, reused where the next begins the same way.
+    pub(super) memo: Option<super::averaged::Memo>,
 }
 
 /// Why a person is needed.
@@ -137,6 +182,23 @@ pub struct Stretch {
     pub fast_s: f64,
     /// The visit that fell due at the end, if any.
     pub due: Option<DueCause>,
+}
+
+impl Stretch {
+    /// Adds what a later stretch of the same hour brought.
+    pub fn absorb(&mut self, later: &Stretch) {
+        self.end_s = later.end_s;
+        self.cycles += later.cycles;
+        self.fast_s += later.fast_s;
+        self.body_temp_k_s += later.body_temp_k_s;
+        self.head_temp_k_s += later.head_temp_k_s;
+        self.head_loss = self.head_loss.plus(later.head_loss);
+        self.cup_loss = self.cup_loss.plus(later.cup_loss);
+        for (mine, theirs) in self.state_s.iter_mut().zip(&later.state_s) {
+            *mine += theirs;
+        }
+        self.due = later.due;
+    }
 }
 
 /// One point of a cycle seen close up.

@@ -5,6 +5,7 @@
 
 mod correlations;
 mod cylinder;
+mod plate;
 mod sphere;
 
 pub use correlations::{
@@ -12,6 +13,7 @@ pub use correlations::{
     vertical_nusselt_natural,
 };
 pub use cylinder::cylinder_heat_w_m2k;
+pub use plate::{DISK_STILL, disk_film, plate_nusselt_forced, plate_nusselt_natural};
 pub use sphere::{SphereFilm, sphere_film, vapour_fluxes_kg_m2s};
 
 /// Standard acceleration of free fall [m/s2].

@@ -1,0 +1,203 @@
+//! One cycle marched from tip to tip in steady air, heat conserved to rounding in every step.
+
+use super::super::engine::Nodes;
+use super::local::Local;
+
+/// Steps in the tube and in the head; the latter crowd towards both ends.
+const TUBE_STEPS: usize = 3;
+const HEAD_STEPS: usize = 6;
+
+/// What one cycle brought.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub(super) struct Cycle {
+    /// Duration, dip included [s].
+    pub(super) period_s: f64,
+    /// Heat the air took from the head [J].
+    pub(super) head_heat_j: f64,
+    /// Heat the body gained [J].
+    pub(super) body_heat_j: f64,
+    /// Water and ethanol lost by the head [kg].
+    pub(super) loss_kg: [f64; 2],
+    /// Time integral of the head temperature [K s].
+    pub(super) head_k_s: f64,
+    /// Driving power at the tip [W]; the stall is where it vanishes.
+    pub(super) tip_driving_w: f64,
+    /// Heat moved while climbing [J].
+    pub(super) climb_heat_j: f64,
+    /// Duration of the climb [s].
+    climb_s: f64,
+}
+
+impl Cycle {
+    /// Mean driving power while climbing [W].
+    pub(super) fn mean_driving_w(&self) -> f64 {
+        if self.climb_s > 0.0 {
+            self.climb_heat_j / self.climb_s
+        } else {
+            f64::INFINITY
+        }
+    }
+}
+
+/// The air cannot carry the liquid to the tip from this body temperature; holds the driving power where it failed [W].
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Starved(pub(super) f64);
+
+/// A point on the climb.
+#[derive(Debug, Clone, Copy)]
+struct Point {
+    lifted_m3: f64,
+    body_k: f64,
+    x_k: f64,
+    driving_w: f64,
+}
+
+/// Marches one cycle from the tip with the body at `body_k` to the next tip.
+pub(super) fn march(local: &Local, body_k: f64) -> Result<Cycle, Starved> {
+    let mut cycle = Cycle::default();
+    let tip_x_k = local.holding_k(local.engine.device.tip_volume_m3, body_k);
+    let drained = local.engine.after_drain_and_reset(body_k - tip_x_k, body_k);
+    let dipped = dip(local, drained, &mut cycle);
+    let risen = local
+        .engine
+        .re_rise(dipped, |lifted_m3, body_k| local.holding_k(lifted_m3, body_k));
+    climb(local, risen, body_k, &mut cycle)?;
+    Ok(cycle)
+}
+
+/// The air side goes on during the dip: one midpoint step.
+fn dip(local: &Local, from: Nodes, cycle: &mut Cycle) -> Nodes {
+    let duration_s = local.engine.device.dip.duration_s;
+    let (head_j_k, body_j_k) = (
+        local.engine.head_j_k(from.lifted_m3),
+        local.engine.body_j_k(from.lifted_m3),
+    );
+    let conduction = local.engine.device.conduction_w_k;
+    let step = |at: Nodes, step_s: f64| {
+        let (taken_w, gained_w) = (local.heat_w.at(at.head_k), local.gain_w.at(at.body_k));
+        let conducted_w = conduction * (at.body_k - at.head_k);
+        Nodes {
+            head_k: from.head_k + (conducted_w - taken_w) * step_s / head_j_k,
+            body_k: from.body_k + (gained_w - conducted_w) * step_s / body_j_k,
+            lifted_m3: from.lifted_m3,
+        }
+    };
+    let middle = step(from, 0.5 * duration_s);
+    cycle.period_s += duration_s;
+    cycle.head_heat_j += local.heat_w.at(middle.head_k) * duration_s;
+    cycle.body_heat_j += local.gain_w.at(middle.body_k) * duration_s;
+    add_losses(local, middle.head_k, duration_s, cycle);
+    step(middle, duration_s)
+}
+
+/// From the nodes after a dip to the tip, where the body is expected at `tip_body_k`.
+fn climb(local: &Local, from: Nodes, tip_body_k: f64, cycle: &mut Cycle) -> Result<(), Starved> {
+    let (tube_m3, tip_m3) = (local.engine.tube_m3(), local.engine.device.tip_volume_m3);
+    let start_x_k = from.body_k - from.head_k;
+    let mut here = point(local, from.lifted_m3, from.body_k, start_x_k)?;
+    if from.lifted_m3 < tube_m3.min(tip_m3) {
+        let (start_m3, width_m3) = (from.lifted_m3, tube_m3.min(tip_m3) - from.lifted_m3);
+        for i in 1..=TUBE_STEPS {
+            here = panel(
+                local,
+                here,
+                start_m3 + width_m3 * i as f64 / TUBE_STEPS as f64,
+                tip_body_k,
+                cycle,
+            )?;
+        }
+    }
+    if here.lifted_m3 < tip_m3 {
+        let (start_m3, width_m3) = (here.lifted_m3, tip_m3 - here.lifted_m3);
+        for i in 1..=HEAD_STEPS {
+            here = panel(local, here, start_m3 + width_m3 * crowded(i), tip_body_k, cycle)?;
+        }
+    }
+    cycle.tip_driving_w = here.driving_w;
+    Ok(())
+}
+
+/// Share of the way after step `i`, steps crowding towards both ends (Chebyshev points).
+fn crowded(i: usize) -> f64 {
+    const SHARES: [f64; HEAD_STEPS + 1] = [
+        0.0,
+        0.066_987_298_107_780_7,
+        0.25,
+        0.5,
+        0.75,
+        0.933_012_701_892_219_3,
+        1.0,
+    ];
+    SHARES[i]
+}
+
+fn point(local: &Local, lifted_m3: f64, body_k: f64, x_k: f64) -> Result<Point, Starved> {
+    let driving_w = local.driving_w(lifted_m3, x_k, body_k);
+    if driving_w > 0.0 {
+        Ok(Point {
+            lifted_m3,
+            body_k,
+            x_k,
+            driving_w,
+        })
+    } else {
+        Err(Starved(driving_w))
+    }
+}
+
+/// One step of the climb. Between its ends the driving power is taken linear in the heat moved, which makes the
+/// time a logarithm: exact for a straight tube and heat linear in temperature, and well behaved up to the stall.
+fn panel(local: &Local, here: Point, to_m3: f64, tip_body_k: f64, cycle: &mut Cycle) -> Result<Point, Starved> {
+    let engine = &local.engine;
+    let middle_m3 = 0.5 * (here.lifted_m3 + to_m3);
+    let (head_j_k, body_j_k) = (engine.head_j_k(middle_m3), engine.body_j_k(middle_m3));
+    let (ratio, risen_m3) = (head_j_k / body_j_k, to_m3 - here.lifted_m3);
+    let entered_j_k = engine.head_j_k(to_m3) - engine.head_j_k(here.lifted_m3);
+    let conduction = engine.device.conduction_w_k;
+    let left_m3 = engine.device.tip_volume_m3 - here.lifted_m3;
+    let mut body_k = here.body_k + (tip_body_k - here.body_k) * risen_m3 / left_m3;
+    let (mut duration_s, mut heat_j, mut conducted_w, mut gained_w, mut there) = (0.0, 0.0, 0.0, 0.0, here);
+    // Twice: the body's temperature at the far end depends weakly on the time the step takes.
+    for _ in 0..2 {
+        there = point(local, to_m3, body_k, local.holding_k(to_m3, body_k))?;
+        let mean_x_k = 0.5 * (here.x_k + there.x_k);
+        heat_j =
+            engine.latent_j_m3 * (1.0 + ratio) * risen_m3 + entered_j_k * mean_x_k + head_j_k * (there.x_k - here.x_k);
+        duration_s = heat_j / log_mean(here.driving_w, there.driving_w);
+        conducted_w = conduction * mean_x_k;
+        gained_w = local.gain_w.at(0.5 * (here.body_k + there.body_k));
+        body_k = here.body_k + ((gained_w - conducted_w) * duration_s - engine.latent_j_m3 * risen_m3) / body_j_k;
+    }
+    let taken_j = heat_j + duration_s * (conducted_w - ratio * (gained_w - conducted_w));
+    cycle.period_s += duration_s;
+    cycle.climb_s += duration_s;
+    cycle.climb_heat_j += heat_j;
+    cycle.head_heat_j += taken_j;
+    cycle.body_heat_j += gained_w * duration_s;
+    let middle_k = 0.5 * (here.body_k - here.x_k + there.body_k - there.x_k);
+    let settled_k = middle_k + (taken_j / duration_s - local.heat_w.at(middle_k)) / local.heat_w.slope(middle_k);
+    add_losses(
+        local,
+        if settled_k.is_finite() { settled_k } else { middle_k },
+        duration_s,
+        cycle,
+    );
+    Ok(Point { body_k, ..there })
+}
+
+fn add_losses(local: &Local, head_k: f64, duration_s: f64, cycle: &mut Cycle) {
+    for (lost_kg, rate) in cycle.loss_kg.iter_mut().zip(&local.loss_kg_s) {
+        *lost_kg += rate.at(head_k) * duration_s;
+    }
+    cycle.head_k_s += head_k * duration_s;
+}
+
+/// Logarithmic mean of two positive numbers.
+fn log_mean(a: f64, b: f64) -> f64 {
+    let ratio = (b - a) / a;
+    if ratio.abs() < 1e-4 {
+        a * (1.0 + ratio * (0.5 - ratio / 12.0))
+    } else {
+        (b - a) / (b / a).ln()
+    }
+}

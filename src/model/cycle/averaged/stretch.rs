@@ -1,0 +1,222 @@
+//! A stretch of time cut into pieces over which the answer changes little.
+
+use super::super::cup;
+use super::super::ledger::{DRIED_OUT_WETNESS, book_cup, book_felt, cup_drop_m, has_supply, is_due, wetness};
+use super::super::types::{Forcing, HourForcing, HourState, State, Stretch};
+use super::respond::{Plant, Response, respond};
+
+/// No piece is cut shorter than this [s].
+const SHORTEST_S: f64 = 110.0;
+/// A rate that changes by more than this share over a piece asks for a shorter piece.
+const RATE_CHANGE: f64 = 0.25;
+/// A mixed evaporant's strength drifts: pieces no longer than this [s].
+const MIXED_S: f64 = 240.0;
+
+/// Carries a state from `from_s` to `to_s` of an hour, or to the second a visit falls due.
+pub(in crate::model::cycle) fn advance(
+    plant: Plant,
+    state: &mut State,
+    hour: &HourForcing,
+    from_s: f64,
+    to_s: f64,
+    stop_when_due: bool,
+) -> Stretch {
+    let mut out = Stretch {
+        end_s: from_s,
+        ..Stretch::default()
+    };
+    while out.end_s < to_s - 1e-6 {
+        let was_due = is_due(plant.device, state);
+        let piece = next_piece(plant, state, hour, out.end_s, to_s);
+        piece.book(plant, state, hour, &mut out);
+        let due = is_due(plant.device, state);
+        if stop_when_due && due.is_some() && was_due.is_none() {
+            out.due = due;
+            break;
+        }
+    }
+    out
+}
+
+/// A piece of time between two answers.
+struct Piece {
+    from_s: f64,
+    duration_s: f64,
+    start: Response,
+    end: Response,
+    supply: bool,
+}
+
+fn next_piece(plant: Plant, state: &mut State, hour: &HourForcing, from_s: f64, to_s: f64) -> Piece {
+    let start = settle_ice(plant, state, &hour.at(from_s));
+    let supply = has_supply(plant.device, state);
+    let mut duration_s = longest_s(plant, state, &start, supply).min(to_s - from_s);
+    loop {
+        let end = respond(plant, state, &hour.at(from_s + duration_s));
+        if duration_s <= SHORTEST_S || alike(&start, &end) {
+            return Piece {
+                from_s,
+                duration_s,
+                start,
+                end,
+                supply,
+            };
+        }
+        duration_s *= 0.5;
+    }
+}
+
+fn alike(a: &Response, b: &Response) -> bool {
+    a.state == b.state
+        && a.freezes == b.freezes
+        && (a.rate_1_s - b.rate_1_s).abs() <= RATE_CHANGE * a.rate_1_s.max(b.rate_1_s)
+}
+
+/// The answer now, after freezing or thawing if it is time to.
+fn settle_ice(plant: Plant, state: &mut State, forcing: &Forcing) -> Response {
+    let cup_frozen =
+        plant.device.cup.is_some() && state.cup.total_kg() > 0.0 && state.cup_temp_k <= state.cup.freezing_point_k();
+    let answer = respond(plant, state, forcing);
+    if state.iced == (answer.freezes || cup_frozen) {
+        return answer;
+    }
+    state.iced = !state.iced;
+    respond(plant, state, forcing)
+}
+
+/// How long the felt may be taken as it is [s].
+fn longest_s(plant: Plant, state: &State, answer: &Response, supply: bool) -> f64 {
+    let head = &plant.device.head;
+    let mixed = state.felt.ethanol_kg > 0.0 || state.cup.ethanol_kg > 0.0;
+    let base_s = if mixed { MIXED_S } else { f64::INFINITY };
+    let loss_kg_s = (answer.loss_kg_s[0] + answer.loss_kg_s[1]).abs().max(1e-12);
+    let critical_kg = head.critical_share * head.felt_capacity_kg;
+    let above_kg = (state.felt.total_kg() - critical_kg).max(0.0);
+    if supply && answer.running() && answer.rate_1_s * head.uptake_kg > loss_kg_s {
+        let filling_kg = head.felt_capacity_kg - state.felt.total_kg();
+        let filling_s = if filling_kg > 0.05 * head.felt_capacity_kg {
+            SHORTEST_S
+        } else {
+            f64::INFINITY
+        };
+        return base_s.min(filling_s);
+    }
+    base_s.min((above_kg.max(0.04 * head.felt_capacity_kg) / loss_kg_s).max(SHORTEST_S))
+}
+
+impl Piece {
+    fn book(mut self, plant: Plant, state: &mut State, hour: &HourForcing, out: &mut Stretch) {
+        self.cut_at_reach(plant, state, hour);
+        let duration_s = self.duration_s;
+        let settling_s = 0.5 * (self.start.settling_s + self.end.settling_s);
+        let drift_k_s = (self.end.body_k - self.start.body_k) / duration_s;
+        let first_off_k = state.body_temp_k - self.start.body_k;
+        let transient_k = first_off_k + settling_s * drift_k_s;
+        let gone = -(-duration_s / settling_s).exp_m1();
+        let last_off_k = transient_k * (1.0 - gone) - settling_s * drift_k_s;
+        let mean_off_k = transient_k * gone * settling_s / duration_s - settling_s * drift_k_s;
+
+        let runs = self.running_shares(first_off_k, last_off_k);
+        let run_s = (runs[0] + runs[1]) * duration_s;
+        let cycles = duration_s * self.cycles_per_second(runs, mean_off_k);
+        out.cycles += cycles;
+        out.state_s[HourState::Running as usize] += run_s;
+        self.book_standing(duration_s - run_s, runs, out);
+        let shared = [0, 1].map(|s| duration_s * self.loss_kg_s(s, runs, mean_off_k));
+        book_felt(plant.device, state, cycles, shared, self.supply, out);
+        let middle = hour.at(self.from_s + 0.5 * duration_s);
+        book_cup(plant.device, plant.tuning, &middle, state, duration_s, out);
+
+        let mean_body_k = 0.5 * (self.start.body_k + self.end.body_k) + mean_off_k;
+        let mean_head_k = 0.5 * (self.start.head_k + self.end.head_k) + mean_off_k * runs[0].max(runs[1]).min(1.0);
+        out.body_temp_k_s += mean_body_k * duration_s;
+        out.head_temp_k_s += mean_head_k * duration_s;
+        out.fast_s += if cycles > run_s / 3.0 { run_s } else { 0.0 };
+        out.end_s += duration_s;
+        state.body_temp_k = self.end.body_k + last_off_k;
+        state.head_temp_k = self.end.head_k + last_off_k;
+        if runs[1] == 0.0 && wetness(plant.device, &state.felt) <= DRIED_OUT_WETNESS {
+            state.dried_out = true;
+        }
+    }
+
+    /// Ends the piece where the level falls out of the beak's reach, if it does.
+    fn cut_at_reach(&mut self, plant: Plant, state: &mut State, hour: &HourForcing) {
+        let (Some(cup), true) = (&plant.device.cup, self.supply) else {
+            return;
+        };
+        let mean = |s: usize| 0.5 * (self.start.loss_kg_s[s] + self.end.loss_kg_s[s]);
+        let middle = hour.at(self.from_s + 0.5 * self.duration_s);
+        let side = cup::CupSide::of(cup, plant.device.evaporant_abv_pct, plant.tuning, &middle, state);
+        let (_, cup_loss) = side.carry(state.cup_temp_k, self.duration_s);
+        let filling_kg = plant.device.head.felt_capacity_kg - state.felt.total_kg();
+        let head_kg = if self.start.running() || self.end.running() {
+            (mean(0) + mean(1)) * self.duration_s + filling_kg
+        } else {
+            0.0
+        };
+        let out_kg = cup_loss[0] * self.duration_s + cup_loss[1] * self.duration_s + cup.shared_by * head_kg;
+        let per_m = state.cup.density_kg_m3(state.cup_temp_k) * cup.area_m2;
+        let left_kg = (cup.reach_m - cup_drop_m(plant.device, state)) * per_m;
+        if out_kg > left_kg && out_kg > 0.0 {
+            let shortest_s = self.duration_s.min(1.0);
+            self.duration_s = (self.duration_s * left_kg / out_kg).max(shortest_s);
+            self.end = respond(plant, state, &hour.at(self.from_s + self.duration_s));
+        }
+    }
+
+    /// Shares of the piece run from its start and up to its end. A piece that only changes over is split where the
+    /// driving power, linear in between, passes zero.
+    fn running_shares(&self, first_off_k: f64, last_off_k: f64) -> [f64; 2] {
+        let drive = |r: &Response, off_k: f64| r.driving_w + r.driving_slope_w_k * off_k;
+        let (first_w, last_w) = (drive(&self.start, first_off_k), drive(&self.end, last_off_k));
+        let first_runs = self.start.running() && first_w > 0.0;
+        let last_runs = self.end.running() && last_w > 0.0;
+        match (first_runs, last_runs) {
+            (true, true) => [0.5, 0.5],
+            (false, false) => [0.0, 0.0],
+            (true, false) => [split(first_w, last_w), 0.0],
+            (false, true) => [0.0, split(last_w, first_w)],
+        }
+    }
+
+    fn cycles_per_second(&self, runs: [f64; 2], mean_off_k: f64) -> f64 {
+        let answer = |r: &Response| r.rate_1_s * (1.0 + r.rate_slope_1_k * mean_off_k).clamp(0.2, 3.0);
+        // Where only one end runs, the rate falls to nothing on the way: half of it on average.
+        let fading = if runs[0] > 0.0 && runs[1] > 0.0 { 1.0 } else { 0.5 };
+        fading * (runs[0] * answer(&self.start) + runs[1] * answer(&self.end))
+    }
+
+    fn loss_kg_s(&self, species: usize, runs: [f64; 2], mean_off_k: f64) -> f64 {
+        let (first, last) = match runs {
+            [a, b] if a > 0.0 && b == 0.0 => (a, 1.0 - a),
+            [a, b] if b > 0.0 && a == 0.0 => (1.0 - b, b),
+            _ => (0.5, 0.5),
+        };
+        let answer = |r: &Response| r.loss_kg_s[species] * (1.0 + r.loss_slope_1_k * mean_off_k).clamp(0.2, 3.0);
+        first * answer(&self.start) + last * answer(&self.end)
+    }
+
+    fn book_standing(&self, standing_s: f64, runs: [f64; 2], out: &mut Stretch) {
+        if standing_s <= 0.0 {
+            return;
+        }
+        let cause = |r: &Response| if r.running() { HourState::Humid } else { r.state };
+        let (first, last) = match runs {
+            [a, b] if a > 0.0 && b == 0.0 => (0.0, 1.0),
+            [a, b] if b > 0.0 && a == 0.0 => (1.0, 0.0),
+            _ => (0.5, 0.5),
+        };
+        out.state_s[cause(&self.start) as usize] += first * standing_s;
+        out.state_s[cause(&self.end) as usize] += last * standing_s;
+    }
+}
+
+fn split(running_w: f64, standing_w: f64) -> f64 {
+    let standing_w = standing_w.min(0.0);
+    if running_w > standing_w {
+        running_w / (running_w - standing_w)
+    } else {
+        0.5
+    }
+}

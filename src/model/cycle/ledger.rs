@@ -1,0 +1,153 @@
+//! The books of liquid: what felt and cup lose, what the beak brings, and when a person is needed.
+
+use super::cup::{self, CupSide};
+use super::types::{DueCause, Forcing, State, Stretch, Tuning};
+use crate::model::device::Device;
+use crate::model::fluids::Liquid;
+
+/// A felt wet over less than this share of its surface, and standing still, counts as dried out.
+pub const DRIED_OUT_WETNESS: f64 = 0.1;
+
+/// Share of the head's surface that is wet: 1 down to the critical store, then falling with it (constant-rate, then
+/// falling-rate drying).
+pub(super) fn wetness(device: &Device, felt: &Liquid) -> f64 {
+    let critical_kg = device.head.critical_share * device.head.felt_capacity_kg;
+    (felt.total_kg() / critical_kg).clamp(0.0, 1.0)
+}
+
+/// How far the level has fallen below the brim mark [m]; 0 without a cup.
+pub fn cup_drop_m(device: &Device, state: &State) -> f64 {
+    match &device.cup {
+        None => 0.0,
+        Some(cup) => {
+            let full = cup::full(cup, device.evaporant_abv_pct);
+            cup::drop_m(cup, &full, &state.cup, state.cup_temp_k).max(0.0)
+        }
+    }
+}
+
+/// Why a person is needed now, if so: the level is out of the beak's reach, or the felt dried out.
+pub fn is_due(device: &Device, state: &State) -> Option<DueCause> {
+    match &device.cup {
+        Some(cup) if cup_drop_m(device, state) >= cup.reach_m * (1.0 - 1e-9) => Some(DueCause::CupAtReach),
+        _ if state.dried_out => Some(DueCause::FeltDry),
+        _ => None,
+    }
+}
+
+/// Fills the cup to the brim mark and wets the felt; returns what was poured.
+///
+/// Water is topped up. Ethanol-water is replaced whole, since its strength has drifted: the cup is emptied first.
+pub fn refill(device: &Device, state: &mut State) -> Liquid {
+    let abv = device.evaporant_abv_pct;
+    let felt = Liquid::from_abv(device.head.felt_capacity_kg, abv);
+    let cup = device.cup.as_ref().map(|cup| cup::full(cup, abv)).unwrap_or_default();
+    let poured = if abv > 0.0 {
+        felt.plus(cup)
+    } else {
+        let missing_kg = felt.total_kg() - state.felt.total_kg() + cup.total_kg() - state.cup.total_kg();
+        Liquid::from_abv(missing_kg.max(0.0), 0.0)
+    };
+    (state.felt, state.cup, state.dried_out) = (felt, cup, false);
+    poured
+}
+
+/// Can the beak drink?
+pub(super) fn has_supply(device: &Device, state: &State) -> bool {
+    let in_reach = |c: &crate::model::device::Cup| cup_drop_m(device, state) < c.reach_m * (1.0 - 1e-9);
+    !state.iced && state.cup.total_kg() > 0.0 && device.cup.as_ref().is_some_and(in_reach)
+}
+
+/// Books `cycles` dips and `loss` of the head over a piece of time.
+pub(super) fn book_felt(
+    device: &Device,
+    state: &mut State,
+    cycles: f64,
+    loss: [f64; 2],
+    supply: bool,
+    out: &mut Stretch,
+) {
+    let before = state.felt;
+    let lost = Liquid {
+        water_kg: loss[0],
+        ethanol_kg: loss[1],
+    };
+    state.felt = kept(before, lost, device.head.felt_capacity_kg);
+    out.head_loss.water_kg += before.water_kg - state.felt.water_kg;
+    out.head_loss.ethanol_kg += before.ethanol_kg - state.felt.ethanol_kg;
+    if cycles <= 0.0 || !supply {
+        return;
+    }
+    let sharers = device.cup.as_ref().map_or(1.0, |cup| cup.shared_by);
+    let wanted_kg = (device.head.felt_capacity_kg - state.felt.total_kg()).max(0.0);
+    let taken_kg = wanted_kg
+        .min(cycles * device.head.uptake_kg)
+        .min(state.cup.total_kg() / sharers);
+    let taken = state.cup.scaled(taken_kg);
+    state.felt = state.felt.plus(taken);
+    state.cup = less(state.cup, taken, sharers);
+    if state.felt.ethanol_kg > 0.0 || state.cup.ethanol_kg > 0.0 {
+        exchange(device, state, cycles, sharers);
+    }
+}
+
+/// Each dip swaps a share of the felt's liquid for the cup's.
+fn exchange(device: &Device, state: &mut State, cycles: f64, sharers: f64) {
+    let share = -(cycles * (-device.head.exchange_share).ln_1p()).exp_m1();
+    let (felt_kg, cup_kg) = (state.felt.total_kg(), state.cup.total_kg() / sharers);
+    if felt_kg <= 0.0 || cup_kg <= 0.0 {
+        return;
+    }
+    // Swapped until both would be mixed at most: a cup smaller than the felt cannot overshoot.
+    let swapped_kg = share * felt_kg * cup_kg / (felt_kg + cup_kg);
+    let (out, back) = (state.felt.scaled(swapped_kg), state.cup.scaled(swapped_kg));
+    state.felt = less(state.felt, out, 1.0).plus(back);
+    state.cup = less(state.cup, back, sharers).plus(out.scaled(out.total_kg() * sharers));
+}
+
+/// Books the cup's own loss over a piece of time and carries its temperature.
+pub(super) fn book_cup(
+    device: &Device,
+    tuning: &Tuning,
+    forcing: &Forcing,
+    state: &mut State,
+    duration_s: f64,
+    out: &mut Stretch,
+) {
+    let Some(cup) = &device.cup else { return };
+    if state.cup.total_kg() <= 0.0 || duration_s <= 0.0 {
+        return;
+    }
+    let side = CupSide::of(cup, device.evaporant_abv_pct, tuning, forcing, state);
+    let (temp_k, rate) = side.carry(state.cup_temp_k, duration_s);
+    let before = state.cup;
+    state.cup = less(
+        state.cup,
+        Liquid {
+            water_kg: rate[0] * duration_s,
+            ethanol_kg: rate[1] * duration_s,
+        },
+        1.0,
+    );
+    state.cup_temp_k = temp_k;
+    out.cup_loss.water_kg += before.water_kg - state.cup.water_kg;
+    out.cup_loss.ethanol_kg += before.ethanol_kg - state.cup.ethanol_kg;
+}
+
+/// What is left of `from`, never below zero.
+fn less(from: Liquid, taken: Liquid, times: f64) -> Liquid {
+    Liquid {
+        water_kg: (from.water_kg - times * taken.water_kg).max(0.0),
+        ethanol_kg: (from.ethanol_kg - times * taken.ethanol_kg).max(0.0),
+    }
+}
+
+/// The felt after a loss (or dew, when negative): never below empty, and dew beyond the capacity drips off.
+fn kept(felt: Liquid, lost: Liquid, capacity_kg: f64) -> Liquid {
+    let left = less(felt, lost, 1.0);
+    if left.total_kg() > capacity_kg {
+        left.scaled(capacity_kg)
+    } else {
+        left
+    }
+}
