@@ -6,6 +6,7 @@
     reason = "tests explain themselves by name and may fail loudly"
 )]
 
+mod device;
 mod house_rules;
 
 #[test]

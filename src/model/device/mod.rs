@@ -1,12 +1,39 @@
 //! A device definition, checked as a whole, and what follows from it.
 
+mod assumptions;
+mod balance;
+mod bands;
+mod bounds;
+mod cautions;
+mod check;
 mod curve;
 mod definition;
+mod derived;
+mod examples;
+mod faults;
+mod filled;
+mod heat;
 mod hydrostatics;
+mod shape;
+mod sizes;
 mod sphere;
+mod substances;
 mod vessel;
+
+pub use bounds::*;
+pub use check::{Checked, check};
 pub use definition::*;
+pub use derived::Derived;
+pub use examples::{Example, examples};
+pub use filled::{
+    DEFAULT_ABSORPTANCE, DEFAULT_CONDUCTION_W_K, DEFAULT_CRITICAL_SHARE, DEFAULT_DIP_ANGLE_DEG, DEFAULT_DIP_SECONDS,
+    DEFAULT_DRAIN_FRACTION, DEFAULT_END_GAP_MM, DEFAULT_EXCHANGE_SHARE, DEFAULT_FREEBOARD_MM, DEFAULT_UPTAKE_SHARE,
+    DEFAULT_VAPOUR_RESET,
+};
 pub use hydrostatics::Hydrostatics;
+pub use shape::{TUBE_WALL_MIN_MM, TUBE_WIDEST_SHARE};
+pub use substances::CUSTOM_FLUID;
+pub use vessel::HEAD_FULL_SHARE;
 
 use crate::model::fluids::WorkingFluid;
 
@@ -29,6 +56,8 @@ pub struct Device {
     pub dip: Dip,
     /// Strength of the evaporant filled in [% by volume]; 0 is water.
     pub evaporant_abv_pct: f64,
+    /// Hardness of the water filled in [mg/L as CaCO3]; 0 where it was not given.
+    pub hardness_mg_l: f64,
     /// Lamp, if any.
     pub lamp: Option<LampDefinition>,
     /// Cup, if any.
@@ -79,6 +108,8 @@ pub struct Body {
     pub full_capacity_j_k: f64,
     /// Long-wave emissivity of the glass.
     pub emissivity: f64,
+    /// Share of short-wave radiation absorbed.
+    pub absorptance: f64,
 }
 
 /// What happens in a dip.

@@ -1,0 +1,124 @@
+//! A definition goes in; a device with all that follows from it comes out, or every fault at once.
+
+use super::definition::{CupDefinition, Definition};
+use super::faults::Faults;
+use super::filled::Filled;
+use super::hydrostatics::Hydrostatics;
+use super::shape::MM;
+use super::{Cup, Device, Dip, assumptions, balance, cautions, derived, heat, shape, sizes, substances};
+use super::{Derived, shape::STATED_TEMP_K};
+use crate::model::fluids::WorkingFluid;
+use crate::model::notes::{Assumption, Caution, Fault};
+
+/// A sound device and what goes with it.
+#[derive(Debug, Clone)]
+pub struct Checked {
+    /// The device in SI units.
+    pub device: Device,
+    /// Figures that follow from it, for the user.
+    pub derived: Derived,
+    /// Every value that was not given.
+    pub assumptions: Vec<Assumption>,
+    /// Hazards that need no weather to be known.
+    pub cautions: Vec<Caution>,
+}
+
+/// Checks a definition as a whole.
+///
+/// Numbers are practical (mm, mL, g, °C) and lie within [`super::ALL_BOUNDS`]. Missing ones are filled and said in
+/// [`Checked::assumptions`]. The error holds every fault that can be told at once: each names the field, what was
+/// expected, what was found and the remedy. A check across several fields waits until each of them is sound.
+///
+/// ```
+/// use dipcast::model::device::{check, examples};
+/// let checked = check(&examples()[0].definition).expect("our own example is sound");
+/// assert!((checked.device.tip_volume_m3 - 3.0e-6).abs() < 1e-12);
+/// let mut thin = examples()[0].definition.clone();
+/// thin.tube.bore_mm = 1.0;
+/// assert_eq!(check(&thin).expect_err("a bubble locks")[0].field, "tube/bore_mm");
+/// ```
+pub fn check(definition: &Definition) -> Result<Checked, Vec<Fault>> {
+    let mut faults = Faults::default();
+    let (filled, mut said) = Filled::from(definition);
+    sizes::check(definition, &mut faults);
+    shape::check(definition, &filled, &mut faults);
+    let fluid = substances::fluid(definition, &mut faults);
+    let strength_abv_pct = substances::strength_abv_pct(&definition.evaporant, &mut faults);
+    let worked = fluid.and_then(|fluid| work_out(definition, &filled, fluid, strength_abv_pct, &mut faults));
+    let (Some(device), true) = (worked, faults.0.is_empty()) else {
+        return Err(faults.0);
+    };
+    said.extend(assumptions::always(definition, &device));
+    Ok(Checked {
+        derived: derived::derive(&device, &filled),
+        cautions: cautions::of(definition, &device),
+        assumptions: said,
+        device,
+    })
+}
+
+fn work_out(
+    definition: &Definition,
+    filled: &Filled,
+    fluid: WorkingFluid,
+    strength_abv_pct: f64,
+    faults: &mut Faults,
+) -> Option<Device> {
+    let max_temp_k = substances::max_temp_k(definition, &fluid, faults);
+    let vessel = shape::vessel(definition, filled, faults)?;
+    shape::check_with_fluid(definition, &vessel, &fluid, max_temp_k, faults);
+    if !faults.clean(&["balance", "head/felt/dry_mass_g", "head/felt/capacity_g"]) {
+        return None;
+    }
+    let density = fluid.liquid_density_kg_m3(STATED_TEMP_K);
+    let (hydrostatics, tip_volume_m3) = balance::settle(definition, filled, vessel, density, faults)?;
+    Some(assemble(
+        definition,
+        filled,
+        fluid,
+        hydrostatics,
+        [tip_volume_m3, strength_abv_pct, max_temp_k],
+    ))
+}
+
+fn assemble(
+    definition: &Definition,
+    filled: &Filled,
+    fluid: WorkingFluid,
+    hydrostatics: Hydrostatics,
+    [tip_volume_m3, evaporant_abv_pct, max_temp_k]: [f64; 3],
+) -> Device {
+    let vessel = *hydrostatics.vessel();
+    Device {
+        tip_volume_m3,
+        head: heat::head(definition, filled, &vessel),
+        body: heat::body(definition, filled, &vessel, &fluid),
+        conduction_w_k: filled.conduction_w_k,
+        dip: Dip {
+            duration_s: filled.dip_seconds,
+            drain_fraction: filled.drain_fraction,
+            vapour_reset: filled.vapour_reset,
+        },
+        evaporant_abv_pct,
+        hardness_mg_l: filled.hardness_mg_l,
+        lamp: definition.lamp.clone(),
+        cup: definition.cup.as_ref().map(|given| cup(given, filled)),
+        max_temp_k,
+        liquid_heat_j_m3k: heat::liquid_heat_j_m3k(&fluid),
+        hydrostatics,
+        fluid,
+    }
+}
+
+fn cup(given: &CupDefinition, filled: &Filled) -> Cup {
+    let diameter_m = given.opening_diameter_mm * MM;
+    Cup {
+        diameter_m,
+        area_m2: 0.25 * std::f64::consts::PI * diameter_m * diameter_m,
+        fill_depth_m: (given.depth_mm - filled.freeboard_mm) * MM,
+        freeboard_m: filled.freeboard_mm * MM,
+        reach_m: given.reach_mm * MM,
+        covered_fraction: filled.covered_fraction,
+        shared_by: f64::from(filled.shared_by),
+    }
+}
