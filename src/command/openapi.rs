@@ -1,0 +1,7 @@
+//! `dipcast openapi`
+
+use dipcast::http::{openapi, router};
+
+pub(super) fn run() -> Result<(), String> {
+    super::print(&openapi::text(&router::document()))
+}

@@ -1,0 +1,62 @@
+//! `dipcast serve`
+
+use std::path::PathBuf;
+use std::time::Duration;
+
+use clap::Args;
+use dipcast::config::{Config, Overrides};
+use dipcast::http::{router, server};
+use dipcast::telemetry;
+use tokio::net::TcpListener;
+
+#[derive(Args)]
+pub(super) struct Serve {
+    /// Address and port to listen on; default 127.0.0.1:8080.
+    #[arg(long, value_name = "ADDR:PORT")]
+    bind: Option<String>,
+    /// Settings that differ from deploy/config.default.toml.
+    #[arg(long, value_name = "FILE")]
+    config: Option<PathBuf>,
+    /// Serve everyone who can reach the port, without keys.
+    #[arg(long)]
+    allow_anonymous: bool,
+}
+
+pub(super) fn run(arguments: &Serve) -> Result<(), String> {
+    let overrides = Overrides {
+        file: arguments.config.clone(),
+        bind: arguments.bind.clone(),
+        allow_anonymous: arguments.allow_anonymous,
+    };
+    let config = Config::load(&overrides).map_err(|error| error.to_string())?;
+    telemetry::start_logs(&config.log)?;
+    let runtime = tokio::runtime::Runtime::new().map_err(|error| format!("the runtime could not start: {error}"))?;
+    let served = runtime.block_on(serve(config));
+    // Runs that were cancelled leave by themselves; none may hold the process.
+    runtime.shutdown_timeout(Duration::from_secs(1));
+    served
+}
+
+async fn serve(config: Config) -> Result<(), String> {
+    let bind = config.server.bind;
+    let listener = TcpListener::bind(bind)
+        .await
+        .map_err(|error| format!("cannot listen on {bind}: {error}"))?;
+    let address = listener.local_addr().map_err(|error| error.to_string())?;
+    warn_if_open(&config);
+    let (router, app) = router::build(config);
+    tracing::info!("listening on http://{address}; the description is at http://{address}/docs/");
+    server::serve(listener, router, app, server::stop_signal()).await;
+    tracing::info!("stopped");
+    Ok(())
+}
+
+/// Said loudly: whoever can reach the port can use it.
+fn warn_if_open(config: &Config) {
+    if config.access.key_sha256.is_empty() && !config.server.bind.ip().is_loopback() {
+        tracing::warn!(
+            "NO KEYS: everyone who can reach {} may use this service (allow_anonymous)",
+            config.server.bind
+        );
+    }
+}

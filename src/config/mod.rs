@@ -1,0 +1,216 @@
+//! Settings: the embedded defaults, then a file, then the environment, then the command line; all faults at once.
+//!
+//! `deploy/config.default.toml` is the documentation of every setting and is compiled in.
+
+mod reader;
+
+use std::net::SocketAddr;
+use std::path::{Path, PathBuf};
+use std::time::Duration;
+
+use figment::Figment;
+use figment::providers::{Env, Format, Toml};
+use reader::Reader;
+pub use reader::{ConfigError, ConfigFault};
+
+/// The defaults, as text.
+pub const DEFAULTS: &str = include_str!("../../deploy/config.default.toml");
+
+/// All settings.
+#[derive(Debug, Clone)]
+pub struct Config {
+    /// The listener.
+    pub server: Server,
+    /// Who may call.
+    pub access: Access,
+    /// Sizes.
+    pub limits: Limits,
+    /// How many predictions at once.
+    pub runs: Runs,
+    /// Logs.
+    pub log: Log,
+}
+
+/// The listener.
+#[derive(Debug, Clone)]
+pub struct Server {
+    /// Address to listen on.
+    pub bind: SocketAddr,
+    /// Serve without keys beyond loopback.
+    pub allow_anonymous: bool,
+    /// Connections held at once.
+    pub max_connections: usize,
+    /// For the first request head of a connection.
+    pub first_byte_timeout: Duration,
+    /// For each later request head.
+    pub header_timeout: Duration,
+    /// From request head to the start of the answer.
+    pub request_timeout: Duration,
+    /// For a client that takes no bytes.
+    pub write_timeout: Duration,
+    /// For running requests after the stop signal.
+    pub drain: Duration,
+}
+
+/// Who may call.
+#[derive(Debug, Clone)]
+pub struct Access {
+    /// SHA-256 of each key.
+    pub key_sha256: Vec<[u8; 32]>,
+    /// Web origins allowed to call from a browser.
+    pub cors_origins: Vec<String>,
+    /// Requests a minute and caller; 0 = no limit.
+    pub requests_per_minute: u32,
+}
+
+/// Sizes.
+#[derive(Debug, Clone)]
+pub struct Limits {
+    /// Largest request body [bytes].
+    pub body_bytes: usize,
+    /// Largest weather file after decompression [bytes].
+    pub decompressed_bytes: usize,
+}
+
+/// How many predictions at once.
+#[derive(Debug, Clone)]
+pub struct Runs {
+    /// Computed at once, at least 1.
+    pub parallel: usize,
+    /// Waiting for a place.
+    pub waiting: usize,
+}
+
+/// Logs.
+#[derive(Debug, Clone)]
+pub struct Log {
+    /// Filter directives.
+    pub filter: String,
+    /// One JSON object a line instead of text.
+    pub json: bool,
+}
+
+/// What the command line changes.
+#[derive(Debug, Clone, Default)]
+pub struct Overrides {
+    /// `--config FILE`.
+    pub file: Option<PathBuf>,
+    /// `--bind ADDR:PORT`.
+    pub bind: Option<String>,
+    /// `--allow-anonymous`.
+    pub allow_anonymous: bool,
+}
+
+impl Config {
+    /// Reads defaults, file, environment and command line, in this order.
+    ///
+    /// # Errors
+    /// Every unknown or wrong setting at once, each with where it came from.
+    pub fn load(overrides: &Overrides) -> Result<Self, ConfigError> {
+        if let Some(file) = overrides.file.as_deref().filter(|file| !file.is_file()) {
+            return Err(ConfigError::missing_file(file));
+        }
+        Self::from_figment(layers(overrides))
+    }
+
+    /// The embedded defaults alone.
+    ///
+    /// # Errors
+    /// Never in a released build: a test loads them.
+    pub fn defaults() -> Result<Self, ConfigError> {
+        Self::from_figment(Figment::from(Toml::string(DEFAULTS)))
+    }
+
+    fn from_figment(figment: Figment) -> Result<Self, ConfigError> {
+        let mut reader = Reader::new(figment)?;
+        let config = Self {
+            server: read_server(&mut reader),
+            access: read_access(&mut reader),
+            limits: read_limits(&mut reader),
+            runs: read_runs(&mut reader),
+            log: read_log(&mut reader),
+        };
+        check_exposure(&config, &mut reader);
+        reader.finish()?;
+        Ok(config)
+    }
+}
+
+fn layers(overrides: &Overrides) -> Figment {
+    let mut figment = Figment::from(Toml::string(DEFAULTS));
+    if let Some(file) = &overrides.file {
+        figment = figment.merge(Toml::file(Path::new(file)));
+    }
+    figment = figment.merge(Env::prefixed("DIPCAST__").split("__"));
+    if let Some(bind) = &overrides.bind {
+        figment = figment.merge(("server.bind", bind.clone()));
+    }
+    if overrides.allow_anonymous {
+        figment = figment.merge(("server.allow_anonymous", true));
+    }
+    figment
+}
+
+fn read_server(reader: &mut Reader) -> Server {
+    Server {
+        bind: reader
+            .parsed("server.bind", "an address with a port, such as 127.0.0.1:8080")
+            .unwrap_or(([127, 0, 0, 1], 0).into()),
+        allow_anonymous: reader.flag("server.allow_anonymous"),
+        max_connections: reader.whole("server.max_connections", 1..=100_000) as usize,
+        first_byte_timeout: reader.seconds("server.first_byte_timeout_s", 1..=300),
+        header_timeout: reader.seconds("server.header_timeout_s", 1..=300),
+        request_timeout: reader.seconds("server.request_timeout_s", 1..=3600),
+        write_timeout: reader.seconds("server.write_timeout_s", 1..=3600),
+        drain: reader.seconds("server.drain_s", 1..=60),
+    }
+}
+
+fn read_access(reader: &mut Reader) -> Access {
+    Access {
+        key_sha256: reader.key_hashes("access.key_sha256"),
+        cors_origins: reader.origins("access.cors_origins"),
+        requests_per_minute: reader.whole("access.requests_per_minute", 0..=1_000_000) as u32,
+    }
+}
+
+fn read_limits(reader: &mut Reader) -> Limits {
+    Limits {
+        body_bytes: reader.whole("limits.body_bytes", 1024..=1 << 30) as usize,
+        decompressed_bytes: reader.whole("limits.decompressed_bytes", 1024..=1 << 32) as usize,
+    }
+}
+
+fn read_runs(reader: &mut Reader) -> Runs {
+    let cores = std::thread::available_parallelism().map_or(1, usize::from);
+    let parallel = reader.whole("runs.parallel", 0..=1024) as usize;
+    Runs {
+        parallel: if parallel == 0 { cores } else { parallel },
+        waiting: reader.whole("runs.waiting", 0..=100_000) as usize,
+    }
+}
+
+fn read_log(reader: &mut Reader) -> Log {
+    Log {
+        filter: reader.text("log.filter"),
+        json: reader.choice("log.format", &["text", "json"]) == Some("json"),
+    }
+}
+
+fn check_exposure(config: &Config, reader: &mut Reader) {
+    let server = &config.server;
+    let open = config.access.key_sha256.is_empty() && !server.allow_anonymous;
+    if open && !server.bind.ip().is_loopback() {
+        reader.fault(
+            "server.bind",
+            format!(
+                "{} can be reached from other machines, but no key is configured; set access.key_sha256, \
+                 or say --allow-anonymous (server.allow_anonymous) to serve everyone",
+                server.bind
+            ),
+        );
+    }
+}
+
+#[cfg(test)]
+mod tests;

@@ -1,0 +1,74 @@
+//! What the handlers share.
+
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
+
+use axum::body::Bytes;
+use metrics_exporter_prometheus::PrometheusHandle;
+
+use super::middleware::rate_limit::RateLimit;
+use super::schema::Schemas;
+use crate::config::Config;
+
+/// Shared by all requests; cheap to clone.
+#[derive(Clone)]
+pub struct App(Arc<Inner>);
+
+struct Inner {
+    config: Config,
+    ready: AtomicBool,
+    metrics: PrometheusHandle,
+    rate_limit: Option<RateLimit>,
+    document: Bytes,
+    schemas: Schemas,
+}
+
+impl App {
+    /// Builds it from the settings and the API description.
+    pub fn new(config: Config, document: &utoipa::openapi::OpenApi) -> Self {
+        let value = serde_json::to_value(document).expect("the API description is plain data");
+        Self(Arc::new(Inner {
+            rate_limit: RateLimit::new(config.access.requests_per_minute),
+            config,
+            ready: AtomicBool::new(true),
+            metrics: crate::telemetry::metrics(),
+            document: super::openapi::text(document).into(),
+            schemas: Schemas::of(&value),
+        }))
+    }
+
+    /// The settings.
+    pub fn config(&self) -> &Config {
+        &self.0.config
+    }
+
+    /// False from the stop signal on.
+    pub fn is_ready(&self) -> bool {
+        self.0.ready.load(Ordering::Relaxed)
+    }
+
+    /// Tells `/readyz` that no new requests should come.
+    pub fn stop(&self) {
+        self.0.ready.store(false, Ordering::Relaxed);
+    }
+
+    /// The process's metrics.
+    pub fn metrics(&self) -> &PrometheusHandle {
+        &self.0.metrics
+    }
+
+    /// The limit on requests, if one is set.
+    pub fn rate_limit(&self) -> Option<&RateLimit> {
+        self.0.rate_limit.as_ref()
+    }
+
+    /// The API description as served.
+    pub fn document(&self) -> Bytes {
+        self.0.document.clone()
+    }
+
+    /// The schemas requests are checked against.
+    pub fn schemas(&self) -> &Schemas {
+        &self.0.schemas
+    }
+}

@@ -1,0 +1,67 @@
+//! The API's description: what stands above the operations, and the answers every operation can give.
+
+mod answers;
+
+use utoipa::Modify;
+use utoipa::openapi::security::{ApiKey, ApiKeyValue, HttpAuthScheme, HttpBuilder, SecurityScheme};
+use utoipa::openapi::{Components, OpenApi};
+
+/// Version of the contract; it moves with `openapi/CHANGELOG.md`, not with the crate.
+pub const API_VERSION: &str = "1.0.0";
+
+#[derive(utoipa::OpenApi)]
+#[openapi(
+    info(
+        title = "dipcast",
+        version = "1.0.0",
+        description = "Predicts cycles, stall hours and water of evaporation-driven tipping displays from hourly air readings.\n\n\
+            Field names carry their unit. Times are RFC 3339 instants in UTC; `time` is the start of an hour and `to` is exclusive. \
+            Every error is a problem document (RFC 9457) that lists all faults at once; unknown fields are refused. \
+            Inside version 1 things are only added.",
+        license(name = "MIT OR Apache-2.0", identifier = "MIT OR Apache-2.0"),
+    ),
+    servers((url = "/", description = "This service.")),
+    tags(
+        (name = "predictions", description = "A device and an hourly series in; cycles, stall hours and water out."),
+        (name = "tables", description = "What stands behind the model: fluids, evaporants, example devices."),
+        (name = "service", description = "Health, metrics and pages."),
+    ),
+    security((), ("bearer" = []), ("api_key" = [])),
+    modifiers(&Keys),
+    components(schemas(super::error::ProblemDocument)),
+)]
+struct Head;
+
+struct Keys;
+
+impl Modify for Keys {
+    fn modify(&self, document: &mut OpenApi) {
+        let components = document.components.get_or_insert_with(Components::new);
+        let text = "A key, where the operator has configured keys.";
+        let bearer = HttpBuilder::new()
+            .scheme(HttpAuthScheme::Bearer)
+            .description(Some(text))
+            .build();
+        components.add_security_scheme("bearer", SecurityScheme::Http(bearer));
+        let header = ApiKeyValue::with_description("X-Api-Key", text);
+        components.add_security_scheme("api_key", SecurityScheme::ApiKey(ApiKey::Header(header)));
+    }
+}
+
+/// Title, licence, servers, keys: everything but the operations.
+pub fn head() -> OpenApi {
+    <Head as utoipa::OpenApi>::openapi()
+}
+
+/// Adds to the collected operations the answers all of them can give.
+pub fn complete(mut document: OpenApi) -> OpenApi {
+    answers::add(&mut document);
+    document
+}
+
+/// The document as text, as it stands in `openapi/v1.json`.
+pub fn text(document: &OpenApi) -> String {
+    let mut text = serde_json::to_string_pretty(document).expect("the API description is plain data");
+    text.push('\n');
+    text
+}

@@ -1,0 +1,42 @@
+//! The one list of routes. Paths are written in full at each handler; the operation id is the handler's name.
+
+use axum::Router;
+use utoipa::openapi::OpenApi;
+use utoipa_axum::router::OpenApiRouter;
+use utoipa_axum::routes;
+
+use super::app::App;
+use super::error::{Problem, ProblemCode};
+use super::{health, middleware, openapi, pages};
+use crate::config::Config;
+
+fn routes() -> OpenApiRouter<App> {
+    OpenApiRouter::with_openapi(openapi::head())
+        .routes(routes!(pages::get_start_page))
+        .routes(routes!(pages::get_openapi_document))
+        .routes(routes!(pages::list_problems))
+        .routes(routes!(pages::get_problem))
+        .routes(routes!(health::get_liveness))
+        .routes(routes!(health::get_readiness))
+        .routes(routes!(health::get_metrics))
+}
+
+/// The API description, complete.
+pub fn document() -> OpenApi {
+    openapi::complete(routes().into_openapi())
+}
+
+/// The whole service as one router, and what its handlers share.
+pub fn build(config: Config) -> (Router, App) {
+    let app = App::new(config, &document());
+    let (routes, _) = routes().split_for_parts();
+    let all = routes
+        .with_state(app.clone())
+        .merge(pages::docs())
+        .fallback(no_such_path);
+    (middleware::wrap(all, &app), app)
+}
+
+async fn no_such_path() -> Problem {
+    Problem::new(ProblemCode::NotFound, "no resource has this path; see /docs")
+}

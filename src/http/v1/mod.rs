@@ -1,0 +1,1 @@
+//! Version 1 of the resources: one file each, with handler, request, response and conversions.
