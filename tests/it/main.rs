@@ -8,6 +8,10 @@
 
 mod device;
 mod house_rules;
+mod openapi;
+mod routes;
+mod server;
+mod support;
 
 #[test]
 fn the_library_links() {

@@ -1,0 +1,5 @@
+//! One file a resource, shaped like the URLs.
+
+mod access;
+mod problems;
+mod service;
