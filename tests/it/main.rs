@@ -12,6 +12,7 @@ mod openapi;
 mod routes;
 mod server;
 mod support;
+mod reference;
 
 #[test]
 fn the_library_links() {

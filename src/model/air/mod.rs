@@ -2,7 +2,7 @@
 //!
 //! Moist air is an ideal mixture of dry air and water vapour. The few tenths of a percent by which real moist air
 //! exceeds ideal saturation (the enhancement factor) are left out, as in psychrometric practice at room pressure.
-//! Relative humidity is over *liquid* water at every temperature, as meteorological instruments report it [WMO8].
+//! Relative humidity is over *liquid* water at every temperature, as meteorological instruments report it [WMO2018].
 //! Every function takes any finite number; a NaN goes through as NaN, nothing panics.
 
 mod saturation;
@@ -24,7 +24,7 @@ pub const GAS_CONSTANT_J_MOLK: f64 = 8.314_462_618;
 pub const MOLAR_MASS_DRY_AIR_KG_MOL: f64 = 0.028_966;
 /// Molar mass of water [kg/mol] [ASHRAE2017].
 pub const MOLAR_MASS_WATER_KG_MOL: f64 = 0.018_015_268;
-/// Molar mass of ethanol [kg/mol] [PubChem].
+/// Molar mass of ethanol [kg/mol] [Schroeder2014].
 pub const MOLAR_MASS_ETHANOL_KG_MOL: f64 = 0.046_068_44;
 /// 0 °C [K].
 pub const ZERO_CELSIUS_K: f64 = 273.15;
@@ -59,7 +59,7 @@ impl Air {
         }
     }
 
-    /// Relative humidity over liquid water [0-1, above 1 when supersaturated] [WMO8].
+    /// Relative humidity over liquid water [0-1, above 1 when supersaturated] [WMO2018].
     #[inline]
     pub fn relative_humidity(&self) -> f64 {
         self.vapour_pressure_pa / saturation_pressure_pa(self.temp_k)
@@ -97,7 +97,7 @@ pub fn vapour_pressure_from_humidity_ratio_pa(humidity_ratio: f64, pressure_pa: 
     pressure_pa * humidity_ratio / (MASS_RATIO + humidity_ratio)
 }
 
-/// Pressure of the standard atmosphere [Pa] at an elevation above sea level [m, -5000 to 11000] [ICAO7488].
+/// Pressure of the standard atmosphere [Pa] at an elevation above sea level [m, -5000 to 11000] [ICAO1993].
 ///
 /// Above or below that range the troposphere's formula simply continues.
 pub fn standard_pressure_pa(elevation_m: f64) -> f64 {

@@ -1,6 +1,8 @@
-//! Density of ethanol-water mixtures, and strength by volume against strength by mass [OIMLR22].
+//! Density of ethanol-water mixtures, and strength by volume against strength by mass [OIML1975].
 
-/// Terms of the general formula of [OIMLR22] that depend on strength alone, at 20 °C [kg/m3].
+#![expect(clippy::excessive_precision, reason = "the digits are those the standard prints")]
+
+/// Terms of the general formula of [OIML1975] that depend on strength alone, at 20 °C [kg/m3].
 const AT_20_C: [f64; 12] = [
     9.982012300e2,
     -1.929769495e2,
@@ -77,7 +79,7 @@ fn polynomial(coefficients: &[f64], x: f64) -> f64 {
     coefficients.iter().rev().fold(0.0, |sum, c| sum * x + c)
 }
 
-/// Density of a mixture [kg/m3] of ethanol mass fraction [0-1] at a temperature [°C, -20 to 40] [OIMLR22].
+/// Density of a mixture [kg/m3] of ethanol mass fraction [0-1] at a temperature [°C, -20 to 40] [OIML1975].
 ///
 /// Outside that range of temperature the nearest end is taken, since the polynomial bends away quickly.
 pub(super) fn mixture_density_kg_m3(mass_fraction: f64, temp_c: f64) -> f64 {
@@ -88,7 +90,7 @@ pub(super) fn mixture_density_kg_m3(mass_fraction: f64, temp_c: f64) -> f64 {
     polynomial(&AT_20_C, mass_fraction) + t * polynomial(&WATER, t) + mixed
 }
 
-/// Strength [% ABV at 20 °C] of an ethanol mass fraction [0-1] [OIMLR22].
+/// Strength [% ABV at 20 °C] of an ethanol mass fraction [0-1] [OIML1975].
 pub(super) fn abv_pct(mass_fraction: f64) -> f64 {
     100.0 * mass_fraction * polynomial(&AT_20_C, mass_fraction) / polynomial(&AT_20_C, 1.0)
 }

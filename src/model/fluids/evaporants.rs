@@ -46,8 +46,8 @@ static ROWS: [EvaporantRow; 2] = [
         valid_range_k: (233.15, 343.15),
         sources: &[
             "vapour pressure: [HylandWexler1983], below 0 °C [MurphyKoop2005]",
-            "latent heat: fitted to [IAPWS95] and [MurphyKoop2005]",
-            "density: [OIMLR22] at strength 0",
+            "latent heat: fitted to [WagnerPruss2002] and [MurphyKoop2005]",
+            "density: [OIML1975] at strength 0",
         ],
         hazards: &[Hazard {
             code: "standing_water",
@@ -66,10 +66,10 @@ static ROWS: [EvaporantRow; 2] = [
         valid_range_k: (253.15, 343.15),
         sources: &[
             "vapour pressures: van Laar [VanLaar1910] fitted to [Gmehling1993] at 25 °C, pure ethanol [Schroeder2014]",
-            "latent heats: [IAPWS95], [Schroeder2014]; heat of mixing ignored",
-            "density and strength by volume: [OIMLR22]",
+            "latent heats: [WagnerPruss2002], [Schroeder2014]; heat of mixing ignored",
+            "density and strength by volume: [OIML1975]",
             "freezing point: [Melinder2010]",
-            "flash point: [EngineeringToolbox]",
+            "flash point: [EngineeringToolbox2005]",
         ],
         hazards: &[Hazard {
             code: "flammable_evaporant",

@@ -145,7 +145,7 @@ pub(super) static R1233ZD: [Hazard; 3] = [
         "restricted_fluid",
         Severity::Warning,
         "R-1233zd(E) is a refrigerant. Handling, venting and labelling of halogenated refrigerants are regulated in many \
-         places and often need a certified person; check local law.",
+         places, in the European Union by Regulation (EU) 2024/573, and often need a certified person; check local law.",
     ),
     note(
         "asphyxiant",
@@ -159,7 +159,7 @@ pub(super) static RE347MCC: [Hazard; 3] = [
         "restricted_fluid",
         Severity::Warning,
         "RE347mcc is a fluorinated ether with a high greenhouse effect. Use, venting and reporting of fluorinated gases are \
-         regulated in many places; check local law.",
+         regulated in many places, in the European Union by Regulation (EU) 2024/573; check local law.",
     ),
     note(
         "above_atmospheric",

@@ -32,7 +32,7 @@ impl Liquid {
         }
     }
 
-    /// A mixture of `total_kg` [kg] and strength `abv_pct` [% ABV at 20 °C, held to 0-100] [OIMLR22].
+    /// A mixture of `total_kg` [kg] and strength `abv_pct` [% ABV at 20 °C, held to 0-100] [OIML1975].
     pub fn from_abv(total_kg: f64, abv_pct: f64) -> Self {
         let ethanol_kg = total_kg * alcohol_density::mass_fraction(abv_pct);
         Self {
@@ -57,7 +57,7 @@ impl Liquid {
         }
     }
 
-    /// Strength [% ABV at 20 °C] [OIMLR22].
+    /// Strength [% ABV at 20 °C] [OIML1975].
     pub fn abv_pct(&self) -> f64 {
         alcohol_density::abv_pct(self.ethanol_mass_fraction())
     }
@@ -106,7 +106,7 @@ impl Liquid {
         }
     }
 
-    /// Density [kg/m3] at a temperature [K, 253 to 313; the nearest end outside] [OIMLR22].
+    /// Density [kg/m3] at a temperature [K, 253 to 313; the nearest end outside] [OIML1975].
     pub fn density_kg_m3(&self, temp_k: f64) -> f64 {
         alcohol_density::mixture_density_kg_m3(self.ethanol_mass_fraction(), temp_k - ZERO_CELSIUS_K)
     }
@@ -139,7 +139,7 @@ impl Liquid {
         }
     }
 
-    /// Specific heat [J/(kg K)] at 20 °C: mass mean of water [IAPWS95] and ethanol [Schroeder2014] and an excess fitted to
+    /// Specific heat [J/(kg K)] at 20 °C: mass mean of water [WagnerPruss2002] and ethanol [Schroeder2014] and an excess fitted to
     /// [Melinder2010], which it meets within 2 % up to 60 % by mass. Its change with temperature is ignored.
     #[inline]
     pub fn heat_capacity_j_kgk(&self) -> f64 {

@@ -1,6 +1,6 @@
 //! What depends on the strength of an ethanol-water mixture: freezing point and flash point.
 
-/// Ethanol mass fraction [%] and freezing point [°C] [Melinder2010], as [CoolProp] prints them; water set to 0 exactly.
+/// Ethanol mass fraction [%] and freezing point [°C] [Melinder2010], as [Bell2014] prints them; water set to 0 exactly.
 const FREEZING: [(f64, f64); 13] = [
     (0.0, 0.0),
     (5.0, -2.03),
@@ -17,7 +17,7 @@ const FREEZING: [(f64, f64); 13] = [
     (60.0, -44.91),
 ];
 
-/// Strength [% ABV] and flash point [°C] [EngineeringToolbox]. The page calls the percentages mass fractions, others print the
+/// Strength [% ABV] and flash point [°C] [EngineeringToolbox2005]. The page calls the percentages mass fractions, others print the
 /// same pairs for volume; read by volume they are the lower, so the more cautious, by 1 to 3 K.
 const FLASH: [(f64, f64); 11] = [
     (5.0, 62.0),
@@ -33,7 +33,7 @@ const FLASH: [(f64, f64); 11] = [
     (96.0, 17.0),
 ];
 
-/// Flash point of pure ethanol, closed cup [°C] [EngineeringToolbox].
+/// Flash point of pure ethanol, closed cup [°C] [EngineeringToolbox2005].
 const PURE_ETHANOL_FLASH_C: f64 = 13.0;
 
 /// Temperature [K] at which ice begins to form in a mixture of this ethanol mass fraction [0-1] [Melinder2010].
@@ -43,7 +43,7 @@ pub fn freezing_point_of_strength_k(mass_fraction: f64) -> f64 {
     273.15 + interpolate(&FREEZING, 100.0 * mass_fraction)
 }
 
-/// Flash point [°C] of an ethanol-water mixture by strength [% ABV]; none below 5 % [EngineeringToolbox].
+/// Flash point [°C] of an ethanol-water mixture by strength [% ABV]; none below 5 % [EngineeringToolbox2005].
 ///
 /// ```
 /// assert_eq!(dipcast::model::fluids::flash_point_c(40.0), Some(26.0));
@@ -51,7 +51,7 @@ pub fn freezing_point_of_strength_k(mass_fraction: f64) -> f64 {
 /// ```
 pub fn flash_point_c(abv_pct: f64) -> Option<f64> {
     match abv_pct {
-        weak if !(weak >= FLASH[0].0) => None,
+        weak if weak.is_nan() || weak < FLASH[0].0 => None,
         strong if strong > 96.0 => {
             let share = ((strong - 96.0) / 4.0).min(1.0);
             Some(17.0 + share * (PURE_ETHANOL_FLASH_C - 17.0))

@@ -1,7 +1,8 @@
 //! The table of working fluids.
 //!
-//! Each row's coefficients are our own fits over -20 to 80 °C to values printed by a general reference library, which takes
-//! them from the published correlation or equation of state that `sources` names; the largest misfit stands beside it.
+//! Each row's coefficients are our own fits over -20 to 80 °C to values printed by general reference libraries ([Bell2014] for
+//! equations of state, [Bell2016] for the rest), which take them from the published work that `sources` names; the largest
+//! misfit stands beside it.
 //! Default highest temperature of a body: 60 °C, or where the saturation pressure reaches 2 bar, whichever is lower
 //! (a choice of ours, rounded down to a whole degree).
 
@@ -48,10 +49,10 @@ static ROWS: [WorkingFluid; 8] = [
         sources: &[
             "vapour pressure: Wagner equation of [VDI2010], fitted within 7e-5",
             "liquid density: [VDI2010], fitted within 2e-5",
-            "latent heat: 28.82 kJ/mol at 25 °C [CRC95] carried to other temperatures by Watson's rule, fitted within 5e-5",
-            "liquid specific heat: 101.2 J/(mol K) at 25 °C [CRC95], taken constant",
+            "latent heat: 28.82 kJ/mol at 25 °C [CRC2014] carried to other temperatures by Watson's rule, fitted within 5e-5",
+            "liquid specific heat: 101.2 J/(mol K) at 25 °C [CRC2014], taken constant",
             "surface tension: [Jasper1972], linear",
-            "vapour compressibility: second virial coefficient of [Tsonopoulos1975] with critical constants of [VDI2010], fitted within 2e-4",
+            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that [Bell2016] prints, fitted within 2e-4",
         ],
         hazards: Cow::Borrowed(&hazards::DICHLOROMETHANE),
         valid_from_k: MINUS_20_C,
@@ -172,7 +173,7 @@ static ROWS: [WorkingFluid; 8] = [
         max_temp_k: 273.15 + 37.0,
         sources: &[
             "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Akasaka2022], fitted within 3e-6, 2e-4, 3e-4, 3e-3, 4e-5",
-            "surface tension: correlation of [REFPROP10], fitted within 2e-3",
+            "surface tension: correlation of [Lemmon2018], fitted within 2e-3",
         ],
         hazards: Cow::Borrowed(&hazards::R1233ZD),
         valid_from_k: MINUS_20_C,
@@ -191,8 +192,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.2000548,
         max_temp_k: 273.15 + 54.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, surface tension: saturation fits of [REFPROP10] as [thermo] prints them, fitted within 3e-5, 2e-4, 3e-4, 1e-3, 2e-3",
-            "vapour compressibility: second virial coefficient of [Tsonopoulos1975] with the critical constants of [REFPROP10], fitted within 3e-4",
+            "vapour pressure, liquid density, latent heat, specific heat, surface tension: saturation fits of [Lemmon2018] as [Bell2016] prints them, fitted within 3e-5, 2e-4, 3e-4, 1e-3, 2e-3",
+            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that [Bell2016] prints, fitted within 3e-4",
         ],
         hazards: Cow::Borrowed(&hazards::RE347MCC),
         valid_from_k: MINUS_20_C,

@@ -109,7 +109,7 @@ impl WorkingFluid {
     /// The same as [`Self::saturation_temp_k`], started from a temperature [K] near the answer: one step or two.
     #[inline]
     pub fn saturation_temp_near_k(&self, pressure_pa: f64, near_k: f64) -> f64 {
-        if !(pressure_pa > 0.0) {
+        if pressure_pa.is_nan() || pressure_pa <= 0.0 {
             return f64::NAN;
         }
         let target = pressure_pa.ln();

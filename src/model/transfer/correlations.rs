@@ -70,7 +70,7 @@ fn forced_speed_part(reynolds: f64) -> f64 {
 }
 
 /// Nusselt number of a sphere in forced flow after [RanzMarshall1952]; the second opinion beside
-/// [`sphere_nusselt_forced`], 13 % higher at a Reynolds number of 100.
+/// [`sphere_nusselt_forced`], 11 % higher at a Reynolds number of 100.
 ///
 /// `reynolds` 0 to 200 in the source (used by others to 5e4), `prandtl` 0.6 to 380.
 #[inline]
