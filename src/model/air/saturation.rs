@@ -4,8 +4,8 @@ use super::ZERO_CELSIUS_K;
 
 /// Saturation pressure over liquid water [Pa] at a temperature [K].
 ///
-/// 0 to 200 °C: [HylandWexler1983], liquid branch. Below 0 °C, over supercooled liquid: [MurphyKoop2005], eq. 10, fitted
-/// down to 123 K. Outside both ranges the formulas continue; the two meet at 0 °C within 2e-5.
+/// 0 to 200 °C: [HylandWexler1983], liquid branch. Below 0 °C, over supercooled liquid: [MurphyKoop2005], eq. 10,
+/// fitted down to 123 K. Outside both ranges the formulas continue; the two meet at 0 °C within 2e-5.
 ///
 /// ```
 /// let p = dipcast::model::air::saturation_pressure_pa(293.15);

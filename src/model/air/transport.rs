@@ -31,19 +31,21 @@ pub fn diffusivity_water_m2_s(temp_k: f64, pressure_pa: f64) -> f64 {
 
 /// Diffusivity of ethanol vapour in air [m2/s] at a temperature [K, 240 to 380] and pressure [Pa].
 ///
-/// 1.02e-5 m2/s at 0 °C and 1 atm [Perry2008], table 2-324, with the temperature exponent that [Massman1998] found for every gas he
-/// reviewed in air.
+/// 1.02e-5 m2/s at 0 °C and 1 atm [Perry2008], table 2-324, with the temperature exponent that [Massman1998] found for
+/// every gas he reviewed in air.
 #[inline]
 pub fn diffusivity_ethanol_m2_s(temp_k: f64, pressure_pa: f64) -> f64 {
     ETHANOL_OVER_WATER_DIFFUSIVITY * diffusivity_water_m2_s(temp_k, pressure_pa)
 }
 
-/// Diffusivity of ethanol vapour in air over that of water vapour, at any temperature and pressure [Perry2008] [Massman1998].
+/// Diffusivity of ethanol vapour in air over that of water vapour, at any temperature and pressure [Perry2008]
+/// [Massman1998].
 pub const ETHANOL_OVER_WATER_DIFFUSIVITY: f64 = 1.02e-5 / 2.178e-5;
 
 /// Latent heat of vaporisation of water [J/kg] at a temperature [K, 233 to 343].
 ///
-/// Cubic fitted to [WagnerPruss2002] from 0 to 70 °C (within 0.05 %) and to [MurphyKoop2005], eq. 9, for supercooled water down to
+/// Cubic fitted to [WagnerPruss2002] from 0 to 70 °C (within 0.05 %) and to [MurphyKoop2005], eq. 9, for supercooled
+/// water down to
 /// -40 °C (within 0.14 %).
 #[inline]
 pub fn latent_heat_vaporisation_j_kg(temp_k: f64) -> f64 {

@@ -5,8 +5,8 @@ use super::{
     saturation_slope_pa_k,
 };
 
-/// Enthalpies of adiabatic saturation: heat of the phase change at 0 °C, its change per kelvin [kJ/kg, kJ/(kg K)] and the
-/// specific heat of the condensed water [kJ/(kg K)] [ASHRAE2017], ch. 1 eq. 33 and 35.
+/// Enthalpies of adiabatic saturation: heat of the phase change at 0 °C, its change per kelvin [kJ/kg, kJ/(kg K)] and
+/// the specific heat of the condensed water [kJ/(kg K)] [ASHRAE2017], ch. 1 eq. 33 and 35.
 struct Phase {
     heat: f64,
     heat_slope: f64,
@@ -31,10 +31,11 @@ const ICE: Phase = Phase {
     slope: saturation_slope_ice_pa_k,
 };
 
-/// Thermodynamic wet-bulb temperature over liquid water [K], also below 0 °C (supercooled wick) [ASHRAE2017], ch. 1 eq. 33.
+/// Thermodynamic wet-bulb temperature over liquid water [K], also below 0 °C (supercooled wick) [ASHRAE2017], ch. 1 eq.
+/// 33.
 ///
-/// Range -80 to 90 °C while the vapour pressure stays below the total pressure. Saturated and supersaturated air give the
-/// dry bulb.
+/// Range -80 to 90 °C while the vapour pressure stays below the total pressure. Saturated and supersaturated air give
+/// the dry bulb.
 ///
 /// ```
 /// use dipcast::model::air::{Air, wet_bulb_k};

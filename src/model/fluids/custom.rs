@@ -59,9 +59,10 @@ pub struct CustomFluid {
 impl WorkingFluid {
     /// A working fluid from given constants.
     ///
-    /// The vapour counts as an ideal gas. Refused, all faults at once, when a number is out of its range, when the vapour
-    /// pressure does not rise over the valid range, or when pressure curve and latent heat differ by more than 15 % in the
-    /// Clapeyron relation (one of the two is then wrong, or given in another unit). Fields are named as in [`CustomFluid`].
+    /// The vapour counts as an ideal gas. Refused, all faults at once, when a number is out of its range, when the
+    /// vapour pressure does not rise over the valid range, or when pressure curve and latent heat differ by more than
+    /// 15 % in the Clapeyron relation (one of the two is then wrong, or given in another unit). Fields are named as in
+    /// [`CustomFluid`].
     pub fn custom(given: CustomFluid) -> Result<WorkingFluid, Vec<Fault>> {
         let mut faults = range_faults(&given);
         if !faults.is_empty() {
@@ -152,7 +153,11 @@ fn range_fault((field, value, low, high, unit): (&str, f64, f64, f64, &str)) -> 
     if value >= low && value <= high {
         return None;
     }
-    let code = if value < low { "below_minimum" } else { "above_maximum" };
+    let code = match value {
+        value if !value.is_finite() => "not_finite",
+        value if value < low => "below_minimum",
+        _ => "above_maximum",
+    };
     let detail = format!("Expected {low} to {high} {unit}, found {value}: check the number and its unit.");
     Some(Fault::new(field, code, detail))
 }
@@ -187,7 +192,10 @@ fn point_faults(points: &[(f64, f64); 3]) -> Vec<Fault> {
         faults.push(Fault::new(
             "vapour_pressure/points",
             "not_rising",
-            format!("Expected three points in rising order, 5 K or more apart, pressure rising; found {points:?}: sort or respace them."),
+            format!(
+                "Expected three points in rising order, 5 K or more apart, pressure rising too; found {points:?}: sort or \
+                 respace them."
+            ),
         ));
     }
     faults
@@ -202,8 +210,8 @@ fn curve_faults(given: &CustomFluid, fluid: &WorkingFluid) -> Vec<Fault> {
         .any(|slope| !(slope > 0.0 && slope.is_finite()))
     {
         let detail = format!(
-            "Expected a vapour pressure that rises from {} to {} °C, found one that does not: narrow the range or correct the \
-             constants.",
+            "Expected a vapour pressure that rises from {} to {} °C, found one that does not: narrow the range or \
+             correct the constants.",
             given.valid_from_c, given.valid_to_c
         );
         return vec![Fault::new("vapour_pressure", "not_rising", detail)];
@@ -226,8 +234,9 @@ fn clapeyron_fault(given: &CustomFluid, fluid: &WorkingFluid) -> Option<Fault> {
         return None;
     }
     let detail = format!(
-        "Expected the latent heat to match the slope of the vapour pressure within 15 %: the curve and the molar mass imply \
-         {implied:.0} kJ/kg at 20 °C, found {}: correct the latent heat, the molar mass or the pressure constants.",
+        "Expected the latent heat to match the slope of the vapour pressure within 15 %: the curve and the molar \
+         mass imply {implied:.0} kJ/kg at 20 °C, found {}: correct the latent heat, the molar mass or the pressure \
+         constants.",
         given.latent_kj_kg
     );
     Some(Fault::new("latent_kj_kg", "inconsistent", detail))
@@ -298,6 +307,24 @@ mod tests {
         let faults = WorkingFluid::custom(given).expect_err("four faults");
         let fields: Vec<_> = faults.iter().map(|fault| fault.field.as_str()).collect();
         assert_eq!(fields, ["density_kg_m3", "latent_kj_kg", "max_temp_c", "name"]);
+        let codes: Vec<_> = faults.iter().map(|fault| fault.code).collect();
+        assert_eq!(codes, ["below_minimum", "not_finite", "above_maximum", "missing"]);
+    }
+
+    #[test]
+    fn crooked_pressure_points_are_refused() {
+        let code = |points| {
+            let given = CustomFluid {
+                vapour_pressure: CustomVapourPressure::Points(points),
+                ..pentane_like()
+            };
+            WorkingFluid::custom(given).expect_err("a fault")[0].code
+        };
+        assert_eq!(code([(20.0, 56.57), (0.0, 24.46), (40.0, 115.7)]), "not_rising");
+        assert_eq!(code([(0.0, 24.46), (1.0, 25.4), (40.0, 115.7)]), "not_rising");
+        assert_eq!(code([(0.0, 24.46), (20.0, f64::INFINITY), (40.0, 115.7)]), "not_finite");
+        // Three points that bend over: the curve through them falls again inside the valid range.
+        assert_eq!(code([(0.0, 24.46), (20.0, 110.0), (40.0, 115.7)]), "not_rising");
     }
 
     #[test]

@@ -53,8 +53,8 @@ static ROWS: [EvaporantRow; 2] = [
             code: "standing_water",
             severity: Severity::Warning,
             text: Cow::Borrowed(
-                "Standing water between 20 and 45 °C can grow bacteria. Clean cup and felt regularly and follow local health \
-                 rules.",
+                "Standing water between 20 and 45 °C can grow bacteria. Clean cup and felt regularly and follow \
+                 local health rules.",
             ),
         }],
     },
@@ -75,8 +75,8 @@ static ROWS: [EvaporantRow; 2] = [
             code: "flammable_evaporant",
             severity: Severity::Warning,
             text: Cow::Borrowed(
-                "Ethanol and water above its flash point gives vapour that a lamp, spark or sun-heated surface can light. Keep \
-                 ignition away, air the place, and follow local fire codes and licensed practice.",
+                "Ethanol and water above its flash point gives vapour that a lamp, spark or sun-heated surface can \
+                 light. Keep ignition away, air the place, and follow local fire codes and licensed practice.",
             ),
         }],
     },

@@ -65,7 +65,8 @@ impl Liquid {
     /// Vapour pressures of water and ethanol over the liquid [Pa] at a temperature [K, 253 to 353].
     ///
     /// Modified Raoult's law with van Laar activity coefficients [VanLaar1910] that do not change with temperature. An
-    /// empty liquid counts as water. Without ethanol this is the saturation pressure of water and nothing else is computed.
+    /// empty liquid counts as water. Without ethanol this is the saturation pressure of water and nothing else is
+    /// computed.
     ///
     /// ```
     /// let spirit = dipcast::model::fluids::Liquid::from_abv(0.1, 40.0);
@@ -139,8 +140,9 @@ impl Liquid {
         }
     }
 
-    /// Specific heat [J/(kg K)] at 20 °C: mass mean of water [WagnerPruss2002] and ethanol [Schroeder2014] and an excess fitted to
-    /// [Melinder2010], which it meets within 2 % up to 60 % by mass. Its change with temperature is ignored.
+    /// Specific heat [J/(kg K)] at 20 °C: mass mean of water [WagnerPruss2002] and ethanol [Schroeder2014] and an
+    /// excess fitted to [Melinder2010], which it meets within 2 % up to 60 % by mass. Its change with temperature is
+    /// ignored.
     #[inline]
     pub fn heat_capacity_j_kgk(&self) -> f64 {
         let e = self.ethanol_mass_fraction();

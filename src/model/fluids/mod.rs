@@ -1,9 +1,9 @@
 //! Working fluids and evaporants: one table, one row a fluid, sources beside the numbers.
 //!
-//! Reading order: [`WorkingFluid`] (what a row can tell), [`working_fluids`] (the rows), [`CustomFluid`] (a row from given
-//! constants), [`Liquid`] (water and ethanol in felt and cup), [`evaporants`]. All SI, temperatures in kelvin. A row holds
-//! inside its own range ([`WorkingFluid::valid_range_k`]); outside it the formulas still return numbers, so that a solver
-//! can step across, but whoever reports a result must refuse it.
+//! Reading order: [`WorkingFluid`] (what a row can tell), [`working_fluids`] (the rows), [`CustomFluid`] (a row from
+//! given constants), [`Liquid`] (water and ethanol in felt and cup), [`evaporants`]. All SI, temperatures in kelvin. A
+//! row holds inside its own range ([`WorkingFluid::valid_range_k`]); outside it the formulas still return numbers, so
+//! that a solver can step across, but whoever reports a result must refuse it.
 
 mod alcohol_density;
 mod custom;

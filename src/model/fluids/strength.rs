@@ -17,8 +17,8 @@ const FREEZING: [(f64, f64); 13] = [
     (60.0, -44.91),
 ];
 
-/// Strength [% ABV] and flash point [°C] [EngineeringToolbox2005]. The page calls the percentages mass fractions, others print the
-/// same pairs for volume; read by volume they are the lower, so the more cautious, by 1 to 3 K.
+/// Strength [% ABV] and flash point [°C] [EngineeringToolbox2005]. The page calls the percentages mass fractions,
+/// others print the same pairs for volume; read by volume they are the lower, so the more cautious, by 1 to 3 K.
 const FLASH: [(f64, f64); 11] = [
     (5.0, 62.0),
     (10.0, 49.0),

@@ -1,10 +1,9 @@
 //! The table of working fluids.
 //!
-//! Each row's coefficients are our own fits over -20 to 80 °C to values printed by general reference libraries ([Bell2014] for
-//! equations of state, [Bell2016] for the rest), which take them from the published work that `sources` names; the largest
-//! misfit stands beside it.
-//! Default highest temperature of a body: 60 °C, or where the saturation pressure reaches 2 bar, whichever is lower
-//! (a choice of ours, rounded down to a whole degree).
+//! Each row's coefficients are our own fits over -20 to 80 °C to values printed by general reference libraries
+//! ([Bell2014] for equations of state, [Bell2016] for the rest), which take them from the published work that `sources`
+//! names; the largest misfit stands beside it. Default highest temperature of a body: 60 °C, or where the saturation
+//! pressure reaches 2 bar, whichever is lower (a choice of ours, rounded down to a whole degree).
 
 use std::borrow::Cow;
 
@@ -20,7 +19,8 @@ pub fn working_fluids() -> &'static [WorkingFluid] {
     &ROWS
 }
 
-/// The row with this name or title; letters and digits count, capitals and punctuation do not (`n-pentane` is `n_pentane`).
+/// The row with this name or title; letters and digits count, capitals and punctuation do not (`n-pentane` is
+/// `n_pentane`).
 pub fn working_fluid(name: &str) -> Option<&'static WorkingFluid> {
     ROWS.iter()
         .find(|row| same_letters(&row.name, name) || same_letters(&row.title, name))
@@ -49,10 +49,12 @@ static ROWS: [WorkingFluid; 8] = [
         sources: &[
             "vapour pressure: Wagner equation of [VDI2010], fitted within 7e-5",
             "liquid density: [VDI2010], fitted within 2e-5",
-            "latent heat: 28.82 kJ/mol at 25 °C [CRC2014] carried to other temperatures by Watson's rule, fitted within 5e-5",
+            "latent heat: 28.82 kJ/mol at 25 °C [CRC2014] carried to other temperatures by Watson's rule, fitted \
+             within 5e-5",
             "liquid specific heat: 101.2 J/(mol K) at 25 °C [CRC2014], taken constant",
             "surface tension: [Jasper1972], linear",
-            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that [Bell2016] prints, fitted within 2e-4",
+            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that \
+             [Bell2016] prints, fitted within 2e-4",
         ],
         hazards: Cow::Borrowed(&hazards::DICHLOROMETHANE),
         valid_from_k: MINUS_20_C,
@@ -71,8 +73,10 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.0741216,
         max_temp_k: 273.15 + 55.0,
         sources: &[
-            "vapour pressure: Wagner equation of [VDI2010], fitted within 6e-5 (the equation of state starts at -3 °C only)",
-            "liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Thol2014], fitted within 5e-4; below -3 °C extrapolated by it",
+            "vapour pressure: Wagner equation of [VDI2010], fitted within 6e-5 (the equation of state starts at -3 \
+             °C only)",
+            "liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Thol2014], \
+             fitted within 5e-4; below -3 °C extrapolated by it",
             "surface tension: [Mulero2014], fitted within 1e-3",
         ],
         hazards: Cow::Borrowed(&hazards::DIETHYL_ETHER),
@@ -92,7 +96,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.07214878,
         max_temp_k: 273.15 + 57.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Thol2019], fitted within 4e-5, 6e-5, 7e-5, 5e-4, 6e-5",
+            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state \
+             of [Thol2019], fitted within 4e-5, 6e-5, 7e-5, 5e-4, 6e-5",
             "surface tension: [Mulero2012], fitted within 1e-3",
         ],
         hazards: Cow::Borrowed(&hazards::N_PENTANE),
@@ -112,7 +117,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.07214878,
         max_temp_k: 273.15 + 49.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Lemmon2006], fitted within 3e-5, 7e-5, 1.1e-4, 1e-3, 3e-5",
+            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state \
+             of [Lemmon2006], fitted within 3e-5, 7e-5, 1.1e-4, 1e-3, 3e-5",
             "surface tension: [Mulero2012], fitted within 8e-4",
         ],
         hazards: Cow::Borrowed(&hazards::ISOPENTANE),
@@ -132,7 +138,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.05807914,
         max_temp_k: 273.15 + 60.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Lemmon2006], fitted within 7e-5, 2e-5, 3e-5, 2e-4, 3e-5",
+            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state \
+             of [Lemmon2006], fitted within 7e-5, 2e-5, 3e-5, 2e-4, 3e-5",
             "surface tension: [Mulero2012], fitted within 3e-4",
         ],
         hazards: Cow::Borrowed(&hazards::ACETONE),
@@ -152,7 +159,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.04606844,
         max_temp_k: 273.15 + 60.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Schroeder2014], fitted within 9e-5, 5e-5, 5e-5, 6e-4, 5e-5",
+            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state \
+             of [Schroeder2014], fitted within 9e-5, 5e-5, 5e-5, 6e-4, 5e-5",
             "surface tension: [Mulero2012], fitted within 1e-4",
         ],
         hazards: Cow::Borrowed(&hazards::ETHANOL),
@@ -172,7 +180,8 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.1304962,
         max_temp_k: 273.15 + 37.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state of [Akasaka2022], fitted within 3e-6, 2e-4, 3e-4, 3e-3, 4e-5",
+            "vapour pressure, liquid density, latent heat, specific heat, vapour compressibility: equation of state \
+             of [Akasaka2022], fitted within 3e-6, 2e-4, 3e-4, 3e-3, 4e-5",
             "surface tension: correlation of [Lemmon2018], fitted within 2e-3",
         ],
         hazards: Cow::Borrowed(&hazards::R1233ZD),
@@ -192,8 +201,10 @@ static ROWS: [WorkingFluid; 8] = [
         molar_mass_kg_mol: 0.2000548,
         max_temp_k: 273.15 + 54.0,
         sources: &[
-            "vapour pressure, liquid density, latent heat, specific heat, surface tension: saturation fits of [Lemmon2018] as [Bell2016] prints them, fitted within 3e-5, 2e-4, 3e-4, 1e-3, 2e-3",
-            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that [Bell2016] prints, fitted within 3e-4",
+            "vapour pressure, liquid density, latent heat, specific heat, surface tension: saturation fits of \
+             [Lemmon2018] as [Bell2016] prints them, fitted within 3e-5, 2e-4, 3e-4, 1e-3, 2e-3",
+            "vapour compressibility: second virial coefficient of [Tsonopoulos1974] with the critical constants that \
+             [Bell2016] prints, fitted within 3e-4",
         ],
         hazards: Cow::Borrowed(&hazards::RE347MCC),
         valid_from_k: MINUS_20_C,

@@ -161,8 +161,8 @@ impl WorkingFluid {
 
     /// Latent heat per volume of saturated vapour [J/m3] at a temperature [K]: T dp/dT (1 - rho_v/rho_l).
     ///
-    /// This is the Clapeyron relation; it equals latent heat times vapour density as far as the row is consistent (within
-    /// 2 %), and it needs no real-gas data beyond a correction of a few parts in a thousand.
+    /// This is the Clapeyron relation; it equals latent heat times vapour density as far as the row is consistent
+    /// (within 2 %), and it needs no real-gas data beyond a correction of a few parts in a thousand.
     #[inline]
     pub fn latent_per_vapour_volume_j_m3(&self, temp_k: f64) -> f64 {
         let (pressure, slope) = self.vapour_pressure_and_slope(temp_k);

@@ -1,5 +1,5 @@
-//! Nusselt numbers of spheres and cylinders. With the Schmidt number in place of the Prandtl number the same forms give the
-//! Sherwood number.
+//! Nusselt numbers of spheres and cylinders. With the Schmidt number in place of the Prandtl number the same forms give
+//! the Sherwood number.
 
 /// x to a power, x at least 0, within a few units of the last place; half the price of the library's exact power.
 #[inline]
@@ -37,8 +37,8 @@ impl SphereDrive {
         }
     }
 
-    /// [`blend`] of [`sphere_nusselt_natural`] and [`sphere_nusselt_forced`] in one go: products and powers become sums of
-    /// logarithms, which halves the price in the hottest loop of the model.
+    /// [`blend`] of [`sphere_nusselt_natural`] and [`sphere_nusselt_forced`] in one go: products and powers become sums
+    /// of logarithms, which halves the price in the hottest loop of the model.
     #[inline]
     pub(super) fn nusselt(&self, prandtl: f64) -> f64 {
         const LN_CHURCHILL: f64 = -0.529_329_095_330_550_4; // ln 0.589

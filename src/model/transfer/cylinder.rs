@@ -6,9 +6,10 @@ use crate::model::air::{Air, mixture_density_kg_m3};
 
 /// Convective heat transfer coefficient [W/(m2 K)] of an upright dry cylinder in air that moves across it.
 ///
-/// `diameter_m` and `length_m` [m], `surface_temp_k` [K], `speed_m_s` [m/s, 0 or more]. Crossflow [ChurchillBernstein1977] on
-/// the diameter and natural convection [ChurchillChu1975] on the height, cubes of the coefficients added [Churchill1977].
-/// The gain that a thin tube has over a flat wall in still air is left out (it is small beside the crossflow of any room).
+/// `diameter_m` and `length_m` [m], `surface_temp_k` [K], `speed_m_s` [m/s, 0 or more]. Crossflow
+/// [ChurchillBernstein1977] on the diameter and natural convection [ChurchillChu1975] on the height, cubes of the
+/// coefficients added [Churchill1977]. The gain that a thin tube has over a flat wall in still air is left out (it is
+/// small beside the crossflow of any room).
 #[inline]
 pub fn cylinder_heat_w_m2k(diameter_m: f64, length_m: f64, surface_temp_k: f64, air: &Air, speed_m_s: f64) -> f64 {
     let film = FilmAir::at(0.5 * (surface_temp_k + air.temp_k), air.pressure_pa);

@@ -1,7 +1,8 @@
 //! Heat and mass transfer between surfaces and moist air.
 //!
-//! Dimensionless laws, the wet sphere's film, vapour fluxes with Stefan flow, the tube, and long-wave exchange. Air in the
-//! film has the properties of dry air at the mean of surface and air temperature; only the buoyancy sees the vapours.
+//! Dimensionless laws, the wet sphere's film, vapour fluxes with Stefan flow, the tube, and long-wave exchange. Air in
+//! the film has the properties of dry air at the mean of surface and air temperature; only the buoyancy sees the
+//! vapours.
 
 mod correlations;
 mod cylinder;

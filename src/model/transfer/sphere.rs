@@ -14,17 +14,18 @@ pub struct SphereFilm {
     pub heat_w_m2k: f64,
     /// Mass transfer coefficient of water vapour, Sh D / d [m/s].
     pub water_m_s: f64,
-    /// Mass transfer coefficient of ethanol vapour, Sh D / d [m/s]; 0 when the surface holds none, for nothing can cross then.
+    /// Mass transfer coefficient of ethanol vapour, Sh D / d [m/s]; 0 when the surface holds none, for nothing can
+    /// cross then.
     pub ethanol_m_s: f64,
 }
 
 /// Film coefficients of a sphere in air that moves at `speed_m_s` [m/s, 0 or more].
 ///
-/// `diameter_m` [m], `surface_temp_k` [K], `surface_vapours_pa` water and ethanol at the surface [Pa], ambient `air` (no
-/// ethanol). Natural convection [Churchill1983] is driven by the density difference of the two gas mixtures, so cooling
-/// (sinks) and added water vapour (rises) pull against each other while ethanol vapour (heavy) sinks too; forced
-/// convection is [Whitaker1972]; the cubes of both add up [Churchill1977]. Surface vapours above 99.9 % of the total
-/// pressure count as 99.9 %.
+/// `diameter_m` [m], `surface_temp_k` [K], `surface_vapours_pa` water and ethanol at the surface [Pa], ambient `air`
+/// (no ethanol). Natural convection [Churchill1983] is driven by the density difference of the two gas mixtures, so
+/// cooling (sinks) and added water vapour (rises) pull against each other while ethanol vapour (heavy) sinks too;
+/// forced convection is [Whitaker1972]; the cubes of both add up [Churchill1977]. Surface vapours above 99.9 % of the
+/// total pressure count as 99.9 %.
 ///
 /// ```
 /// use dipcast::model::{air::Air, transfer::sphere_film};
@@ -72,10 +73,11 @@ fn bounded(vapours_pa: [f64; 2], air: &Air) -> [f64; 2] {
 
 /// Vapour leaving the surface, water and ethanol [kg/(m2 s), negative = condensing], with Stefan flow.
 ///
-/// `film` from [`sphere_film`], `film_temp_k` mean of surface and air [K], `surface_vapours_pa` water and ethanol at the
-/// surface [Pa], ambient `air` (no ethanol). Each species diffuses on its own difference; the drift that both cause is
-/// shared: with one species alone this is exactly `k M p / (R T) ln[(p - e_air) / (p - e_surface)]` [BirdStewartLightfoot2002],
-/// eq. 18.2-14. A surface at or above its boiling point is held at 99.9 % of the total pressure, so the result stays finite.
+/// `film` from [`sphere_film`], `film_temp_k` mean of surface and air [K], `surface_vapours_pa` water and ethanol at
+/// the surface [Pa], ambient `air` (no ethanol). Each species diffuses on its own difference; the drift that both cause
+/// is shared: with one species alone this is exactly `k M p / (R T) ln[(p - e_air) / (p - e_surface)]`
+/// [BirdStewartLightfoot2002], eq. 18.2-14. A surface at or above its boiling point is held at 99.9 % of the total
+/// pressure, so the result stays finite.
 #[inline]
 pub fn vapour_fluxes_kg_m2s(film: &SphereFilm, film_temp_k: f64, surface_vapours_pa: [f64; 2], air: &Air) -> [f64; 2] {
     let surface = bounded(surface_vapours_pa, air);

@@ -46,7 +46,8 @@ fn supercooled_water_and_ice_follow_their_tables() {
 
 #[test]
 fn supercooled_water_agrees_with_the_formula_of_weather_services() {
-    // WMO-No. 8, annex 4.B: 6.112 hPa exp(17.62 t / (243.12 + t)), -45 to 60 °C. It is a coarser formula: 0.6 % at -30 °C.
+    // WMO-No. 8, annex 4.B: 6.112 hPa exp(17.62 t / (243.12 + t)), -45 to 60 °C. It is a coarser formula: 0.6 % at -30
+    // °C.
     for t in [-30.0, -20.0, -10.0, -5.0, -1.0, 0.0, 20.0, 40.0] {
         let printed = 611.2 * (17.62_f64 * t / (243.12 + t)).exp();
         near("WMO", air::saturation_pressure_pa(kelvin(t)), printed, 7e-3);
@@ -77,7 +78,8 @@ fn latent_heats_follow_the_printed_tables() {
         let found = air::latent_heat_vaporisation_j_kg(kelvin(row.number("T_C")));
         near("IAPWS-95", found, row.number("hfg_J_per_kg"), 5e-4);
     }
-    // Heats at the triple point: 2834.4 kJ/kg of sublimation less 333.4 of melting (IAPWS R14-08 gives the melting heat).
+    // Heats at the triple point: 2834.4 kJ/kg of sublimation less 333.4 of melting (IAPWS R14-08 gives the melting
+    // heat).
     near("sublimation", air::latent_heat_sublimation_j_kg(273.16), 2834.4e3, 5e-4);
     // The slope of the saturation curves must carry the same heats (Clapeyron, ideal vapour), also below 0 °C.
     for t in [243.15, 258.15, 272.15, 283.15] {
@@ -221,8 +223,8 @@ fn dry_air_follows_a_general_library() {
 
 #[test]
 fn vapours_diffuse_as_handbooks_say() {
-    // Incropera & DeWitt, table A.8, at 298 K: water 0.26e-4, ethanol (ethyl alcohol) 0.12e-4 m2/s (remembered, not looked up);
-    // two digits are printed.
+    // Incropera & DeWitt, table A.8, at 298 K: water 0.26e-4, ethanol (ethyl alcohol) 0.12e-4 m2/s (remembered, not
+    // looked up); two digits are printed.
     near(
         "water",
         air::diffusivity_water_m2_s(298.0, ATMOSPHERE_PA),

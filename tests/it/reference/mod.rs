@@ -1,5 +1,5 @@
-//! Checks against the outside: published tables, general reference libraries, observed series. Sources stand in the head
-//! of each file under `tests/reference` and `tests/data`, or beside the number.
+//! Checks against the outside: published tables, general reference libraries, observed series. Sources stand in the
+//! head of each file under `tests/reference` and `tests/data`, or beside the number.
 
 mod air;
 mod fluids;

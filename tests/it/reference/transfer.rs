@@ -7,7 +7,8 @@ use super::table::{near, rows};
 
 #[test]
 fn laws_give_their_worked_values() {
-    // Churchill 1983 at Ra 7e6, Pr 0.7: 25.34; Whitaker 1972 at Re 100, Pr 0.7: 6.589; both worked by hand from the laws.
+    // Churchill 1983 at Ra 7e6, Pr 0.7: 25.34; Whitaker 1972 at Re 100, Pr 0.7: 6.589; both worked by hand from the
+    // laws.
     near("Churchill", transfer::sphere_nusselt_natural(7e6, 0.7), 25.34, 1e-3);
     near("Whitaker", transfer::sphere_nusselt_forced(100.0, 0.7), 6.589, 1e-3);
     // Ranz-Marshall is 11 % above Whitaker there (7.327 by hand): about the honest uncertainty of such laws.
