@@ -9,6 +9,7 @@
 mod device;
 mod house_rules;
 mod openapi;
+mod prediction;
 mod routes;
 mod server;
 mod support;

@@ -265,7 +265,7 @@ pub struct HourColumns {
 pub struct CycleTrace {
     /// The middle of the hour whose air was taken: the running hour with the median count.
     pub at_unix_s: i64,
-    /// From the end of one dip to the start of the next.
+    /// From the end of one dip to the end of the next.
     pub points: Vec<TracePoint>,
 }
 

@@ -1,0 +1,4 @@
+//! Predictions: whole runs of the shelf device.
+
+mod air;
+mod sums;
