@@ -8,6 +8,7 @@
 
 mod device;
 mod house_rules;
+mod weather;
 mod openapi;
 mod prediction;
 mod routes;
@@ -18,4 +19,11 @@ mod reference;
 #[test]
 fn the_library_links() {
     assert!(dipcast::model::notes::Assumption::new("a", "b", "c").what == "a");
+}
+
+/// A file of `tests/data`.
+fn data(name: &str) -> std::path::PathBuf {
+    std::path::Path::new(env!("CARGO_MANIFEST_DIR"))
+        .join("tests/data")
+        .join(name)
 }

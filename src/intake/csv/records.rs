@@ -3,9 +3,14 @@
 
 use std::io::{BufRead, Read};
 
+use csv_core::ReadRecordResult;
+
 use super::limits::Limits;
 use super::source::fault_of;
 use crate::model::weather::WeatherFault;
+
+/// Cells no limit may go beyond.
+const MOST_FIELDS: usize = 65_536;
 
 /// Rows of a file, one after another.
 pub(super) struct Records<'a> {
@@ -17,6 +22,7 @@ pub(super) struct Records<'a> {
     lines: usize,
     first_line: usize,
     text: Vec<u8>,
+    unquoter: Unquoter,
     /// Where each cell of the row lies in `text`.
     cells: Vec<(u32, u32)>,
 }
@@ -28,10 +34,15 @@ impl<'a> Records<'a> {
             delimiter,
             comment,
             max_row_bytes: limits.max_row_bytes.min(u32::MAX as usize),
-            max_fields: limits.max_fields,
+            max_fields: limits.max_fields.min(MOST_FIELDS),
             lines: 0,
             first_line: 0,
             text: Vec::new(),
+            unquoter: Unquoter {
+                parser: csv_core::ReaderBuilder::new().delimiter(delimiter).build(),
+                plain: Vec::new(),
+                ends: vec![0; limits.max_fields.min(MOST_FIELDS) + 1],
+            },
             cells: Vec::new(),
         }
     }
@@ -137,36 +148,57 @@ impl<'a> Records<'a> {
                 return Err(WeatherFault::row(self.first_line, None, "open_quote", detail));
             }
         }
-        let mut builder = csv::ReaderBuilder::new();
-        builder
-            .has_headers(false)
-            .flexible(true)
-            .delimiter(self.delimiter)
-            .buffer_capacity(self.text.len().max(1));
-        let mut record = csv::ByteRecord::new();
-        let read = builder.from_reader(&self.text[..]).read_byte_record(&mut record);
-        if !read.unwrap_or(false) {
-            return Err(WeatherFault::row(
-                self.first_line,
-                None,
-                "bad_row",
-                "expected cells; the row cannot be cut",
-            ));
-        }
-        let ranges = (0..record.len()).filter_map(|at| record.range(at));
-        self.cells = ranges.map(|range| (range.start as u32, range.end as u32)).collect();
-        self.text.clear();
-        self.text.extend_from_slice(record.as_slice());
+        self.unquote()?;
         self.check_width()
+    }
+
+    /// Cuts the text at the delimiters outside quotes and takes the quotes off.
+    fn unquote(&mut self) -> Result<(), WeatherFault> {
+        let Unquoter { parser, plain, ends } = &mut self.unquoter;
+        plain.resize(self.text.len(), 0);
+        parser.reset();
+        let (_, read, written, cells) = parser.read_record(&self.text, plain, ends);
+        // The end of the text ends the last cell.
+        let (result, _, _, last) = parser.read_record(&self.text[read..], &mut plain[written..], &mut ends[cells..]);
+        self.cells.clear();
+        let mut start = 0;
+        for end in &ends[..cells + last] {
+            self.cells.push((start, *end as u32));
+            start = *end as u32;
+        }
+        std::mem::swap(&mut self.text, plain);
+        match result {
+            ReadRecordResult::Record => Ok(()),
+            ReadRecordResult::OutputEndsFull => Err(self.too_wide()),
+            _ => {
+                let detail = "expected cells; the row cannot be cut into them";
+                Err(WeatherFault::row(self.first_line, None, "bad_row", detail))
+            }
+        }
     }
 
     fn check_width(&self) -> Result<(), WeatherFault> {
         if self.cells.len() <= self.max_fields {
             return Ok(());
         }
-        let detail = format!("expected at most {} cells; found {}", self.max_fields, self.cells.len());
-        Err(WeatherFault::row(self.first_line, None, "too_many_cells", detail))
+        Err(self.too_wide())
     }
+
+    fn too_wide(&self) -> WeatherFault {
+        let detail = format!(
+            "expected at most {} cells; found {} or more",
+            self.max_fields,
+            self.cells.len()
+        );
+        WeatherFault::row(self.first_line, None, "too_many_cells", detail)
+    }
+}
+
+/// The CSV library's parser and its room, for rows with quotes.
+struct Unquoter {
+    parser: csv_core::Reader,
+    plain: Vec<u8>,
+    ends: Vec<usize>,
 }
 
 /// Cells are mostly without spaces: look before searching.

@@ -32,7 +32,7 @@ pub(super) fn open<'a>(
     let start = plain.fill_buf().map_err(|error| fault_of(&error))?;
     let declared = Encoding::for_label(encoding.as_bytes()).unwrap_or(UTF_8);
     let (encoding, marked) = Encoding::for_bom(start).map_or((declared, 0), |(found, length)| (found, length));
-    super::sniff::not_text(&start[..start.len().min(PIECE)], encoding).map_or(Ok(()), Err)?;
+    super::sniff::not_text(&start[..start.len().min(SNIFFED)], encoding).map_or(Ok(()), Err)?;
     plain.consume(marked);
     if encoding == UTF_8 {
         return Ok(plain);
@@ -42,6 +42,8 @@ pub(super) fn open<'a>(
 
 /// First two bytes of RFC 1952.
 const GZIP_MAGIC: &[u8] = &[0x1f, 0x8b];
+/// Bytes at the start that tell text from other things.
+const SNIFFED: usize = 4096;
 /// Bytes handled at a time.
 const PIECE: usize = 64 * 1024;
 /// A small file may grow any number of times.

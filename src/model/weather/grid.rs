@@ -68,6 +68,15 @@ impl Grid {
         means
     }
 
+    /// Hours that hold several readings.
+    pub(super) fn shared(&self) -> Vec<bool> {
+        let mut shared = vec![false; self.hours];
+        for pair in self.hour_of.windows(2).filter(|pair| pair[0] == pair[1]) {
+            shared[pair[0] as usize] = true;
+        }
+        shared
+    }
+
     /// Source row of the first reading of each hour; 0 where there is none.
     pub(super) fn first_rows(&self, row: &[u32]) -> Vec<u32> {
         let mut rows = vec![0; self.hours];

@@ -18,8 +18,8 @@ const STANDARD_TEMP_K: f64 = 288.15;
 /// at the station.
 ///
 /// The reduction WMO-No. 8 and national services use below about 750 m, turned round: the column below the station is as
-/// warm as the station, 6.5 K/km warmer downwards, moist. Services that use the mean of the last 12 hours' temperature
-/// instead differ by up to about 1 hPa at 400 m.
+/// warm as the station, 6.5 K/km warmer downwards, moist. Services that take the mean of the last 12 hours' temperature,
+/// or correct for plateaus, differ by 1 to 3 hPa at 400 m.
 pub fn station_pressure_pa(sea_level_pa: f64, elevation_m: f64, temp_k: f64, vapour_pressure_pa: f64) -> f64 {
     let column_k = temp_k + LAPSE_K_M * elevation_m / 2.0 + VAPOUR_K_PA * vapour_pressure_pa;
     sea_level_pa * (-GRAVITY_M_S2 * elevation_m / (DRY_AIR_J_KGK * column_k)).exp()

@@ -165,7 +165,13 @@ impl HourlyAir {
         for (filled, also) in filled.iter_mut().zip(fill(&mut vapour_pa, max_gap_hours)) {
             *filled |= also;
         }
-        clip_at_saturation(&temp_k, &mut vapour_pa, &mut raw.flags);
+        let derived: Vec<bool> = grid
+            .shared()
+            .iter()
+            .zip(&filled)
+            .map(|(shared, filled)| shared | filled)
+            .collect();
+        clip_at_saturation(&temp_k, &mut vapour_pa, &derived, &mut raw.flags);
         Self {
             temp_k,
             vapour_pa,
@@ -174,14 +180,15 @@ impl HourlyAir {
     }
 }
 
-/// Means and interpolated values of moist air can lie a little above the saturation curve, which is hollow.
-fn clip_at_saturation(temp_k: &[f64], vapour_pressure_pa: &mut [f64], flags: &mut Vec<Flag>) {
+/// Means and interpolated values of moist air can lie a little above the saturation curve, which is hollow. Single
+/// readings were held below it one by one.
+fn clip_at_saturation(temp_k: &[f64], vapour_pressure_pa: &mut [f64], derived: &[bool], flags: &mut Vec<Flag>) {
     let mut clipped = Sightings::default();
-    for (hour, (temp, vapour)) in temp_k.iter().zip(vapour_pressure_pa).enumerate() {
-        let saturation = saturation_pressure_pa(*temp);
-        if *vapour > saturation {
+    for hour in (0..temp_k.len()).filter(|&hour| derived[hour]) {
+        let saturation = saturation_pressure_pa(temp_k[hour]);
+        if vapour_pressure_pa[hour] > saturation {
             clipped.add(hour + 1);
-            *vapour = saturation;
+            vapour_pressure_pa[hour] = saturation;
         }
     }
     let detail = "hours (counted from 1) whose averaged or interpolated vapour pressure lay above saturation; taken as saturated";
