@@ -15,7 +15,8 @@ pub(super) struct Engine<'a> {
     pub(super) device: &'a Device,
     /// Head glass, felt and what the felt holds [J/K].
     head_base_j_k: f64,
-    /// Latent heat per volume of vapour [J/m³].
+    /// Heat moved per volume of liquid lifted [J/m³]: dV of vapour space gone condenses dV/(v_v - v_l), each kilogram giving
+    /// T p' (v_v - v_l), so T p' exactly (Clapeyron).
     pub(super) latent_j_m3: f64,
     /// Liquid density times gravity [Pa/m].
     pub(super) weight_pa_m: f64,
@@ -29,7 +30,7 @@ impl<'a> Engine<'a> {
         Self {
             device,
             head_base_j_k: device.head.dry_capacity_j_k + felt.total_kg() * felt.heat_capacity_j_kgk(),
-            latent_j_m3: fluid.latent_per_vapour_volume_j_m3(body_k),
+            latent_j_m3: body_k * fluid.vapour_slope_pa_k(body_k),
             weight_pa_m: fluid.liquid_density_kg_m3(body_k) * GRAVITY_M_S2,
             tube_m3: device.hydrostatics.tube_volume_m3(),
         }
@@ -73,6 +74,23 @@ impl<'a> Engine<'a> {
             return OUT_OF_REACH_K;
         }
         (body_k - fluid.saturation_temp_near_k(head_pa, body_k)).min(OUT_OF_REACH_K)
+    }
+
+    /// Lifted volume that a difference holds with the body at `body_k` [m³], 0 to the tip volume.
+    pub(super) fn held_m3(&self, difference_k: f64, body_k: f64) -> f64 {
+        let (mut low, mut high) = (0.0, self.device.tip_volume_m3);
+        if self.holding_k(high, body_k) <= difference_k {
+            return high;
+        }
+        for _ in 0..60 {
+            let middle = 0.5 * (low + high);
+            if self.holding_k(middle, body_k) < difference_k {
+                low = middle
+            } else {
+                high = middle
+            }
+        }
+        low
     }
 
     /// Heat stored in head and body [J], the reference being 0 K.

@@ -22,7 +22,7 @@ use crate::model::fluids::Liquid;
 use averaged::Plant;
 
 impl State {
-    /// Cup full to the brim mark, felt wet, temperatures settled in the given air.
+    /// Cup full to the brim mark, felt wet, temperatures settled in the given air, a dip just over.
     pub fn settled(device: &Device, tuning: &Tuning, forcing: &Forcing) -> State {
         let abv = device.evaporant_abv_pct;
         let cup = device.cup.as_ref().map(|cup| cup::full(cup, abv)).unwrap_or_default();
@@ -36,14 +36,14 @@ impl State {
             dried_out: false,
             iced: false,
             ahead_s: 0.0,
-            last_lag_k: None,
+            start: None,
             memo: None,
         };
         if let Some(cup) = &device.cup {
             state.cup_temp_k = cup::CupSide::of(cup, abv, tuning, forcing, &state).settled_k();
         }
-        let answer = averaged::respond(Plant { device, tuning }, &mut state, forcing);
-        (state.head_temp_k, state.body_temp_k) = (answer.head_k, answer.body_k);
+        let nodes = averaged::settled_nodes(Plant { device, tuning }, &state, forcing);
+        (state.head_temp_k, state.body_temp_k, state.lifted_m3) = (nodes.head_k, nodes.body_k, nodes.lifted_m3);
         state
     }
 }

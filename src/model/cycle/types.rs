@@ -146,8 +146,8 @@ pub struct State {
     pub iced: bool,
     /// How far a resolved dip ran past the end of the last stretch [s].
     pub(super) ahead_s: f64,
-    /// Body less air temperature in the last periodic cycle: where the next search starts [K].
-    pub(super) last_lag_k: Option<f64>,
+    /// The last periodic cycle found: where the next search starts.
+    pub(super) start: Option<super::averaged::Start>,
     /// The averaged answer at the end of the last stretch, reused where the next begins the same way.
     pub(super) memo: Option<super::averaged::Memo>,
 }

@@ -2,14 +2,12 @@
 
 use super::super::engine::Engine;
 use super::super::sides::{HeadSide, body_gain_w};
-use super::super::stall::{root, tip_balance};
-use super::local::Local;
+use super::super::stall::{TipBalance, root, tip_balance};
+use super::local::{Local, Start};
 use super::march::{Cycle, march};
 
 /// Relative closure asked of every averaged cycle: heat in against heat out.
 const CLOSURE: f64 = 1e-9;
-/// A local model is trusted this far from its centre [K].
-const TRUSTED_K: f64 = 1.2;
 
 /// The periodic cycle, or the reason why there is none.
 #[derive(Debug, Clone, Copy)]
@@ -28,56 +26,98 @@ pub(super) enum Balance<'a> {
     Resting { driving_w: f64, slope_w_k: f64 },
 }
 
-/// Solves the closure for a head in steady air. `near_k` is a body temperature to start from, if one is known.
-pub(super) fn balance<'a>(head: &HeadSide<'a>, near_k: Option<f64>) -> Balance<'a> {
+/// Solves the closure for a head in steady air, from the last cycle found if there is one.
+pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'a> {
     let device = head.device;
-    let mut centre_k = near_k.unwrap_or_else(|| first_guess_k(head));
+    let air_k = head.forcing.air.temp_k;
+    let mut start = last.unwrap_or_else(|| first_start(head));
     let mut refused = false;
     for _ in 0..8 {
-        let span_k = Engine::at(device, &head.felt, centre_k).holding_k(device.tip_volume_m3, centre_k);
-        let local = Local::around(head, centre_k, span_k);
-        let ceiling_k = root(
-            |k| local.gain_w.at(k) - device.conduction_w_k * span_k,
-            centre_k,
-            local.gain_w.slope(centre_k),
-        );
-        match close(&local, centre_k, ceiling_k.clamp(centre_k - 3.0, centre_k + 3.0)) {
-            Some((cycle, body_k)) if (body_k - centre_k).abs() <= TRUSTED_K => {
+        let centre_k = air_k + start.lag_k;
+        let local = Local::around(head, centre_k, start);
+        match close(
+            &local,
+            two_node_k(&local, centre_k, start.mean_difference_k),
+            start.span_k,
+        ) {
+            Some((cycle, body_k)) if (body_k - centre_k).abs() <= 1.3 * start.reach_k() => {
                 return Balance::Cycling { local, cycle, body_k };
             }
-            Some((_, body_k)) => centre_k = body_k,
+            Some((cycle, body_k)) => start = next_start(&local, &cycle, body_k, air_k),
             None => {
                 let rest = tip_balance(head, &local.engine);
                 if rest.driving_w <= 0.0 || refused {
-                    return resting(&local, rest.driving_w.min(0.0), rest.body_k, rest.x_k);
+                    return resting(&local, &rest);
                 }
-                (centre_k, refused) = (rest.body_k, true);
+                refused = true;
+                start = Start {
+                    lag_k: rest.body_k - air_k,
+                    span_k: rest.x_k,
+                    mean_difference_k: rest.x_k,
+                    ..start
+                };
             }
         }
     }
-    let local = Local::around(head, centre_k, 1.0);
-    let rest = tip_balance(head, &local.engine);
-    resting(&local, rest.driving_w.min(0.0), rest.body_k, rest.x_k)
+    let local = Local::around(head, air_k + start.lag_k, start);
+    resting(&local, &tip_balance(head, &local.engine))
 }
 
-fn resting<'a>(local: &Local, driving_w: f64, body_k: f64, x_k: f64) -> Balance<'a> {
+/// Where the next search may start after a cycle was found.
+pub(super) fn next_start(local: &Local, cycle: &Cycle, body_k: f64, air_k: f64) -> Start {
+    let head_k = cycle.head_k_s / cycle.period_s;
+    Start {
+        span_k: local.holding_k(local.engine.device.tip_volume_m3, body_k),
+        felt_drop_k: head_k - local.surface_k.at(head_k),
+        mean_difference_k: body_k - head_k,
+        lag_k: body_k - air_k,
+    }
+}
+
+/// Body temperature at which G(T_b) = q(T_b - difference): two Newton steps on smooth curves.
+fn two_node_k(local: &Local, near_k: f64, difference_k: f64) -> f64 {
+    let mut body_k = near_k;
+    for _ in 0..2 {
+        let head_k = body_k - difference_k;
+        let surplus_w = local.gain_w.at(body_k) - local.heat_w.at(head_k);
+        body_k -= surplus_w / (local.gain_w.slope(body_k) - local.heat_w.slope(head_k));
+    }
+    if (body_k - near_k).abs() < 5.0 { body_k } else { near_k }
+}
+
+fn resting<'a>(local: &Local, rest: &TipBalance) -> Balance<'a> {
     let tip_m3 = local.engine.device.tip_volume_m3;
     let ratio = local.engine.head_j_k(tip_m3) / local.engine.body_j_k(tip_m3);
-    let slope_w_k = local.heat_w.slope(body_k - x_k) + ratio * local.gain_w.slope(body_k);
-    Balance::Resting { driving_w, slope_w_k }
+    let slope_w_k = local.heat_w.slope(rest.body_k - rest.x_k) + ratio * local.gain_w.slope(rest.body_k);
+    Balance::Resting {
+        driving_w: rest.driving_w.min(0.0),
+        slope_w_k,
+    }
 }
 
-/// Body temperature at which head and body would balance with a typical difference between them.
-fn first_guess_k(head: &HeadSide) -> f64 {
+/// Starts from the temperature at which head and body would balance with a typical difference between them.
+fn first_start(head: &HeadSide) -> Start {
     let air_k = head.forcing.air.temp_k;
-    let x_k = Engine::at(head.device, &head.felt, air_k).holding_k(head.device.tip_volume_m3, air_k);
-    let miss = |k: f64| body_gain_w(head.device, head.tuning, head.forcing, k) - head.at_node(k - 0.7 * x_k).0.heat_w;
-    root(miss, air_k, -0.1)
+    let span_k = Engine::at(head.device, &head.felt, air_k).holding_k(head.device.tip_volume_m3, air_k);
+    let taken_w = |k: f64| head.at_node(k - 0.7 * span_k).0.heat_w;
+    let body_k = root(
+        |k| body_gain_w(head.device, head.tuning, head.forcing, k) - taken_w(k),
+        air_k,
+        -0.1,
+    );
+    Start {
+        span_k,
+        felt_drop_k: head.device.head.felt_resistance_k_w * taken_w(body_k),
+        mean_difference_k: 0.7 * span_k,
+        lag_k: body_k - air_k,
+    }
 }
 
 /// Bracketed secant on the mean power imbalance. Too cold a body starves; above the ceiling the air gives it nothing more.
-fn close(local: &Local, guess_k: f64, ceiling_k: f64) -> Option<(Cycle, f64)> {
-    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k.max(guess_k) + 0.2);
+fn close(local: &Local, guess_k: f64, span_k: f64) -> Option<(Cycle, f64)> {
+    let conducted_w = local.engine.device.conduction_w_k * span_k;
+    let ceiling_k = guess_k + (conducted_w - local.gain_w.at(guess_k)) / local.gain_w.slope(guess_k);
+    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k.clamp(guess_k, guess_k + 5.0) + 0.2);
     let mut body_k = guess_k;
     let mut older: Option<(f64, f64)> = None;
     for _ in 0..80 {

@@ -21,17 +21,17 @@ pub(super) struct Local<'a> {
 }
 
 impl<'a> Local<'a> {
-    /// Around a body temperature at the tip, for a difference of `span_k` between body and head.
-    pub(super) fn around(head: &HeadSide<'a>, body_k: f64, span_k: f64) -> Self {
+    /// Around a body temperature at the tip. `start` says how large the difference and the felt's own drop about are.
+    pub(super) fn around(head: &HeadSide<'a>, body_k: f64, start: Start) -> Self {
         let device = head.device;
-        let reach_k = 0.8 + 0.5 * span_k;
-        let middle_k = head.at_node(body_k - 0.6 * span_k).1;
+        let reach_k = start.reach_k() + 0.45 * start.span_k;
+        let middle_k = body_k - 0.6 * start.span_k - start.felt_drop_k;
         let surfaces_k = [middle_k - reach_k, middle_k, middle_k + reach_k];
         let flows = surfaces_k.map(|surface_k| head.at_surface(surface_k));
         let resistance = device.head.felt_resistance_k_w;
         let nodes_k = [0, 1, 2].map(|i| surfaces_k[i] + resistance * flows[i].heat_w);
         let species = |s: usize| Parabola::through(nodes_k, flows.map(|flow| flow.loss_kg_s[s]));
-        let bodies_k = [body_k - 1.0, body_k, body_k + 1.0];
+        let bodies_k = [body_k - start.reach_k(), body_k, body_k + start.reach_k()];
         let gains_w = bodies_k.map(|k| body_gain_w(device, head.tuning, head.forcing, k));
         Self {
             engine: Engine::at(device, &head.felt, body_k),
@@ -44,20 +44,17 @@ impl<'a> Local<'a> {
         }
     }
 
-    /// Difference that holds a lifted volume with the body at `body_k` [K]: the vapour pressure curve to third order.
+    /// Difference that holds a lifted volume with the body at `body_k` [K]: the vapour pressure curve to third order,
+    /// turned round as a series (exact to 1e-6 of a difference of 3 K).
     #[inline]
     pub(super) fn holding_k(&self, lifted_m3: f64, body_k: f64) -> f64 {
         let [first, second, third] = self.slope_pa_k;
         let off_k = body_k - self.centre_k;
         let slope = first + off_k * (second + 0.5 * off_k * third);
-        let bend = second + off_k * third;
-        let wanted_pa = self.engine.holding_pa(lifted_m3);
-        let mut x_k = wanted_pa / slope;
-        for _ in 0..3 {
-            let value_pa = x_k * (slope - x_k * (0.5 * bend - x_k * third / 6.0));
-            x_k -= (value_pa - wanted_pa) / (slope - x_k * (bend - 0.5 * x_k * third));
-        }
-        x_k
+        let linear_k = self.engine.holding_pa(lifted_m3) / slope;
+        let b = 0.5 * linear_k * (second + off_k * third) / slope;
+        let c = linear_k * linear_k * third / (6.0 * slope);
+        linear_k * (1.0 + b + (2.0 * b * b - c) + 5.0 * b * (b * b - c))
     }
 
     /// Driving power with the given nodes: what is left to lift liquid, q - kx + (C_h/C_b)(G - kx) [W].
@@ -66,6 +63,27 @@ impl<'a> Local<'a> {
         let conducted_w = self.engine.device.conduction_w_k * x_k;
         let ratio = self.engine.head_j_k(lifted_m3) / self.engine.body_j_k(lifted_m3);
         self.heat_w.at(body_k - x_k) - conducted_w + ratio * (self.gain_w.at(body_k) - conducted_w)
+    }
+}
+
+/// What a local model starts from.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(in crate::model::cycle) struct Start {
+    /// Difference between body and head at the tip [K].
+    pub(super) span_k: f64,
+    /// Difference between head and felt surface [K].
+    pub(super) felt_drop_k: f64,
+    /// Mean difference between body at the tip and head over a cycle [K].
+    pub(super) mean_difference_k: f64,
+    /// Body at the tip less air [K].
+    pub(super) lag_k: f64,
+}
+
+impl Start {
+    /// How far from its centre a local model reaches [K]: less near the stall, where body and head come close to the
+    /// air and natural convection changes its direction.
+    pub(super) fn reach_k(&self) -> f64 {
+        (0.4 * self.lag_k.abs()).clamp(0.05, 0.9)
     }
 }
 

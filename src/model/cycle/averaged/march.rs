@@ -55,14 +55,19 @@ struct Point {
 /// Marches one cycle from the tip with the body at `body_k` to the next tip.
 pub(super) fn march(local: &Local, body_k: f64) -> Result<Cycle, Starved> {
     let mut cycle = Cycle::default();
-    let tip_x_k = local.holding_k(local.engine.device.tip_volume_m3, body_k);
-    let drained = local.engine.after_drain_and_reset(body_k - tip_x_k, body_k);
-    let dipped = dip(local, drained, &mut cycle);
-    let risen = local
-        .engine
-        .re_rise(dipped, |lifted_m3, body_k| local.holding_k(lifted_m3, body_k));
+    let risen = through_the_dip(local, body_k, &mut cycle);
     climb(local, risen, body_k, &mut cycle)?;
     Ok(cycle)
+}
+
+/// From the tip with the body at `body_k` to where hydrostatics leaves the liquid after the dip.
+pub(super) fn through_the_dip(local: &Local, body_k: f64, cycle: &mut Cycle) -> Nodes {
+    let tip_x_k = local.holding_k(local.engine.device.tip_volume_m3, body_k);
+    let drained = local.engine.after_drain_and_reset(body_k - tip_x_k, body_k);
+    let dipped = dip(local, drained, cycle);
+    local
+        .engine
+        .re_rise(dipped, |lifted_m3, body_k| local.holding_k(lifted_m3, body_k))
 }
 
 /// The air side goes on during the dip: one midpoint step.

@@ -6,5 +6,6 @@ mod march;
 mod respond;
 mod stretch;
 
-pub(super) use respond::{Memo, Plant, head_side, respond, why_not};
+pub(super) use local::Start;
+pub(super) use respond::{Memo, Plant, head_side, respond, settled_nodes, why_not};
 pub(super) use stretch::advance;

@@ -1,11 +1,12 @@
 //! What the device would do in one instant's air if that air stayed.
 
-use super::super::engine::Engine;
+use super::super::engine::{Engine, Nodes};
 use super::super::ledger::wetness;
 use super::super::sides::HeadSide;
 use super::super::stall::{Rest, rest, tip_balance};
 use super::super::types::{Forcing, HourState, State, Tuning};
-use super::closed::{Balance, balance};
+use super::closed::{Balance, balance, next_start};
+use super::march::{Cycle, through_the_dip};
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
 
@@ -62,7 +63,7 @@ pub(in crate::model::cycle) struct Memo {
 pub(in crate::model::cycle) fn respond(plant: Plant, state: &mut State, forcing: &Forcing) -> Response {
     if let Some(memo) = state.memo
         && memo.forcing == *forcing
-        && memo.felt == state.felt
+        && same_felt(&memo.felt, &state.felt)
         && memo.iced == state.iced
     {
         return memo.response;
@@ -82,6 +83,27 @@ pub(in crate::model::cycle) fn respond(plant: Plant, state: &mut State, forcing:
     response
 }
 
+/// Nodes of a settled device right after a dip; at rest where it does not cycle.
+pub(in crate::model::cycle) fn settled_nodes(plant: Plant, state: &State, forcing: &Forcing) -> Nodes {
+    let head = head_side(plant, state, forcing);
+    if let Balance::Cycling { local, body_k, .. } = balance(&head, None) {
+        return through_the_dip(&local, body_k, &mut Cycle::default());
+    }
+    let Rest { head_k, body_k, .. } = rest(&head);
+    let engine = Engine::at(plant.device, &state.felt, body_k);
+    Nodes {
+        head_k,
+        body_k,
+        lifted_m3: engine.held_m3(body_k - head_k, body_k),
+    }
+}
+
+/// Felts that differ by rounding only give the same answer.
+fn same_felt(a: &Liquid, b: &Liquid) -> bool {
+    let close = |x: f64, y: f64| (x - y).abs() <= 1e-9 * x.abs().max(y.abs());
+    close(a.water_kg, b.water_kg) && close(a.ethanol_kg, b.ethanol_kg)
+}
+
 /// The head as `state` has it.
 pub(in crate::model::cycle) fn head_side<'a>(plant: Plant<'a>, state: &State, forcing: &'a Forcing) -> HeadSide<'a> {
     HeadSide {
@@ -95,10 +117,9 @@ pub(in crate::model::cycle) fn head_side<'a>(plant: Plant<'a>, state: &State, fo
 }
 
 fn unfrozen(head: &HeadSide, state: &mut State) -> Response {
-    let near_k = state.last_lag_k.map(|lag_k| head.forcing.air.temp_k + lag_k);
-    match balance(head, near_k) {
+    match balance(head, state.start) {
         Balance::Cycling { local, cycle, body_k } => {
-            state.last_lag_k = Some(body_k - head.forcing.air.temp_k);
+            state.start = Some(next_start(&local, &cycle, body_k, head.forcing.air.temp_k));
             let head_k = cycle.head_k_s / cycle.period_s;
             let tip_m3 = head.device.tip_volume_m3;
             let ratio = local.engine.head_j_k(tip_m3) / local.engine.body_j_k(tip_m3);
