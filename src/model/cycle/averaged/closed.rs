@@ -28,7 +28,6 @@ pub(super) enum Balance<'a> {
 
 /// Solves the closure for a head in steady air, from the last cycle found if there is one.
 pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'a> {
-    let device = head.device;
     let air_k = head.forcing.air.temp_k;
     let mut start = last.unwrap_or_else(|| first_start(head));
     let mut refused = false;

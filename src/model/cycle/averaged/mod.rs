@@ -7,5 +7,5 @@ mod respond;
 mod stretch;
 
 pub(super) use local::Start;
-pub(super) use respond::{Memo, Plant, head_side, respond, settled_nodes, why_not};
+pub(super) use respond::{Memo, Plant, head_side, settled_nodes, why_not};
 pub(super) use stretch::advance;

@@ -60,7 +60,7 @@ pub(in crate::model::cycle) struct Memo {
 }
 
 /// The answer for the state's felt in this forcing; remembers it in the state.
-pub(in crate::model::cycle) fn respond(plant: Plant, state: &mut State, forcing: &Forcing) -> Response {
+pub(super) fn respond(plant: Plant, state: &mut State, forcing: &Forcing) -> Response {
     if let Some(memo) = state.memo
         && memo.forcing == *forcing
         && same_felt(&memo.felt, &state.felt)
