@@ -31,6 +31,11 @@ pub(super) fn always(definition: &Definition, device: &Device) -> Vec<Assumption
             "heat from the surroundings, as large as natural convection",
         ),
         Assumption::new(
+            "volumes and masses of the working liquid",
+            "as at 20 °C at every temperature",
+            "the levels by a few hundredths of a millimetre for each kelvin away from 20 °C",
+        ),
+        Assumption::new(
             "gas inside",
             "vapour of the working fluid alone, no air",
             "trapped air slows or stops a device",

@@ -9,12 +9,16 @@ use super::definition::{BalanceDefinition, Definition};
 use super::faults::Faults;
 use super::filled::Filled;
 use super::hydrostatics::Hydrostatics;
-use super::shape::{ML, MM};
+use super::shape::{GRAVITY_M_S2, ML, MM, STATED_TEMP_K};
 use super::sphere::Sphere;
 use super::vessel::Vessel;
+use crate::model::fluids::WorkingFluid;
 
 /// Steps in which the balance is searched before the step that lets go is halved down.
 const SEARCH_STEPS: usize = 4000;
+/// Liquid that the pressure may still push up while the device falls, as a share of the tip volume. More would uncover
+/// more, but then the tip volume is not what drains, and neither heat nor period of a cycle would be right.
+const PUSHED_SHARE: f64 = 0.1;
 /// Kilograms in a gram.
 const G: f64 = 1e-3;
 
@@ -32,12 +36,21 @@ impl Solids {
     }
 }
 
+/// The liquids that weigh in the balance.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Liquids {
+    /// Density of the working fluid at 20 °C [kg/m³].
+    pub(super) density_kg_m3: f64,
+    /// Liquid in the full felt [kg].
+    pub(super) felt_kg: f64,
+}
+
 /// Hydrostatics with the lean in it and the tip volume [m³], if the balance is sound.
 pub(super) fn settle(
     definition: &Definition,
     filled: &Filled,
     vessel: Vessel,
-    liquid_density_kg_m3: f64,
+    liquids: Liquids,
     faults: &mut Faults,
 ) -> Option<(Hydrostatics, f64)> {
     let upright = reaching_head(vessel, faults)?;
@@ -49,9 +62,9 @@ pub(super) fn settle(
             forward_moment_g_mm,
             ..
         } => {
-            let solids = solids(definition, filled, &vessel);
+            let solids = solids(definition, filled, &vessel, liquids.felt_kg);
             let stiffness =
-                |volume_m3: f64| stiffness(&solids, &vessel, liquid_density_kg_m3, pivot_height_mm * MM, volume_m3);
+                |volume_m3: f64| stiffness(&solids, &vessel, liquids.density_kg_m3, pivot_height_mm * MM, volume_m3);
             let forward_kg_m = forward_moment_g_mm * G * MM;
             stands_at_rest(stiffness(0.0).0, forward_kg_m, dip_angle_rad, faults)?;
             let leaning = upright.leaning(&stiffness, forward_kg_m);
@@ -78,7 +91,7 @@ fn reaching_head(vessel: Vessel, faults: &mut Faults) -> Option<Hydrostatics> {
     None
 }
 
-fn solids(definition: &Definition, filled: &Filled, vessel: &Vessel) -> Solids {
+fn solids(definition: &Definition, filled: &Filled, vessel: &Vessel, felt_liquid_kg: f64) -> Solids {
     let glass_kg_m3 = filled.glass_density_g_cm3 * 1e3;
     let shell_m3 = |outer_mm: f64, inner: &Sphere| {
         Sphere {
@@ -92,7 +105,7 @@ fn solids(definition: &Definition, filled: &Filled, vessel: &Vessel) -> Solids {
     let head_glass_kg = glass_kg_m3 * shell_m3(definition.head.outer_diameter_mm, &vessel.head);
     // The balance is struck with a full felt: so it tips earliest, and so it is right after every dip.
     solids.add(
-        head_glass_kg + (felt.dry_mass_g + felt.capacity_g) * G,
+        head_glass_kg + felt.dry_mass_g * G + felt_liquid_kg,
         vessel.head_centre_m(),
     );
     solids.add(
@@ -161,37 +174,23 @@ fn first_m3(last_m3: f64, is_true: impl Fn(f64) -> bool) -> Option<f64> {
 
 /// The tip volume, if liquid and head allow it.
 fn within_limits(hydrostatics: &Hydrostatics, tip_m3: Option<f64>, faults: &mut Faults) -> Option<f64> {
-    let vessel = hydrostatics.vessel();
-    let (run_out, full) = (vessel.run_out_m3() / ML, vessel.head_full_m3() / ML);
-    let first = if run_out < full {
-        (
-            "body_runs_out",
-            format!("the body's level falls to the tube's end at {run_out:.2} mL"),
-            "fill more",
-        )
-    } else {
-        (
-            "head_full",
-            format!("the head is full at {full:.2} mL"),
-            "widen the head",
-        )
-    };
-    let (code, what, remedy) = first;
+    let (code, what, remedy) = first_limit(hydrostatics);
+    let last_m3 = hydrostatics.last_volume_m3();
     match tip_m3 {
+        Some(tip) if tip > 0.0 && tip < last_m3 => return Some(tip),
         Some(tip) if tip <= 0.0 => {
             let detail = "expected a device that stands until liquid rises, found that the first drop already tips it; \
                           raise the pivot or lower the forward moment";
             faults.add("balance/pivot_height_mm", "tips_at_rest", detail);
         }
-        Some(tip) if tip < run_out.min(full) * ML => return Some(tip),
-        Some(tip) => {
+        Some(tip) if !hydrostatics.leans() => {
             let detail = format!(
                 "expected less, because {what}, found {:.3} mL; tip earlier or {remedy}",
                 tip / ML
             );
             faults.add("balance/tip_volume_ml", code, detail);
         }
-        None => {
+        _ => {
             let detail = format!(
                 "expected a device that lets go at some lifted volume, found that it still stands when {what}; lower the \
                  pivot, raise the forward moment or {remedy}"
@@ -202,19 +201,66 @@ fn within_limits(hydrostatics: &Hydrostatics, tip_m3: Option<f64>, faults: &mut 
     None
 }
 
+/// What ends the lift first: its code, what happens, and the remedy.
+fn first_limit(hydrostatics: &Hydrostatics) -> (&'static str, String, &'static str) {
+    let vessel = hydrostatics.vessel();
+    let (run_out, full) = (vessel.run_out_m3() / ML, vessel.head_full_m3() / ML);
+    if run_out < full {
+        let what = format!("the body's level falls to the tube's end at {run_out:.2} mL");
+        ("body_runs_out", what, "fill more")
+    } else {
+        (
+            "head_full",
+            format!("the head is full at {full:.2} mL"),
+            "widen the head",
+        )
+    }
+}
+
+/// Refuses a lift that the vapour's whole pressure cannot hold even at the highest temperature allowed.
+pub(super) fn check_vapour(
+    hydrostatics: &Hydrostatics,
+    tip_m3: f64,
+    fluid: &WorkingFluid,
+    max_temp_k: f64,
+    faults: &mut Faults,
+) {
+    let lift_pa = lift_pa(hydrostatics, tip_m3, fluid);
+    let hottest_pa = fluid.vapour_pressure_pa(max_temp_k);
+    if hottest_pa > lift_pa {
+        return;
+    }
+    let detail = format!(
+        "expected a vapour pressure above the {:.1} kPa that the lift takes, found {:.1} kPa for {} even at {:.0} °C; take a \
+         fluid that boils lower or lower the device",
+        lift_pa / 1e3,
+        hottest_pa / 1e3,
+        fluid.title,
+        max_temp_k - 273.15
+    );
+    faults.add("fluid/name", "vapour_too_weak", detail);
+}
+
+/// Pressure that holds the lift at the tip, with the liquid at 20 °C [Pa].
+pub(super) fn lift_pa(hydrostatics: &Hydrostatics, tip_m3: f64, fluid: &WorkingFluid) -> f64 {
+    fluid.liquid_density_kg_m3(STATED_TEMP_K) * GRAVITY_M_S2 * hydrostatics.lift_m(tip_m3)
+}
+
+/// Refuses a tube's end that stays covered in a dip: no vapour passes and the head does not drain.
 fn end_lies_free(hydrostatics: &Hydrostatics, tip_m3: f64, filled: &Filled, faults: &mut Faults) {
+    let pushed_m3 = (tip_m3 * (1.0 + PUSHED_SHARE)).min(hydrostatics.last_volume_m3());
     if hydrostatics
         .vessel()
-        .end_is_free(tip_m3, filled.dip_angle_deg.to_radians())
+        .end_is_free(pushed_m3, filled.dip_angle_deg.to_radians())
     {
         return;
     }
     let detail = format!(
-        "expected a level that leaves the tube's end free when the device lies at {} degrees with {:.2} mL lifted, so that \
-         vapour passes and the head drains; found the end covered: it would stay down; fill less, tip later, dip deeper or \
-         raise the tube's end",
+        "expected a level that leaves the tube's end free when the device lies at {} degrees, so that vapour passes and the \
+         head drains; found the end covered with {:.2} mL lifted, a tenth more than at the tip: it stays down, or drains far \
+         more than the tip volume; fill less, tip later, dip deeper or raise the tube's end",
         filled.dip_angle_deg,
-        tip_m3 / ML
+        pushed_m3 / ML
     );
     faults.add("fluid/volume_ml", "stuck_down", detail);
 }

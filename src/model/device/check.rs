@@ -1,13 +1,15 @@
 //! A definition goes in; a device with all that follows from it comes out, or every fault at once.
 
+use super::balance::{self, Liquids};
 use super::definition::{CupDefinition, Definition};
+use super::derived::Derived;
 use super::faults::Faults;
 use super::filled::Filled;
 use super::hydrostatics::Hydrostatics;
-use super::shape::MM;
-use super::{Cup, Device, Dip, assumptions, balance, cautions, derived, heat, shape, sizes, substances};
-use super::{Derived, shape::STATED_TEMP_K};
-use crate::model::fluids::WorkingFluid;
+use super::shape::{MM, STATED_TEMP_K};
+use super::substances::{self, Substances};
+use super::vessel::Vessel;
+use super::{Cup, Device, Dip, assumptions, cautions, derived, heat, shape, sizes};
 use crate::model::notes::{Assumption, Caution, Fault};
 
 /// A sound device and what goes with it.
@@ -42,9 +44,9 @@ pub fn check(definition: &Definition) -> Result<Checked, Vec<Fault>> {
     let (filled, mut said) = Filled::from(definition);
     sizes::check(definition, &mut faults);
     shape::check(definition, &filled, &mut faults);
-    let fluid = substances::fluid(definition, &mut faults);
-    let strength_abv_pct = substances::strength_abv_pct(&definition.evaporant, &mut faults);
-    let worked = fluid.and_then(|fluid| work_out(definition, &filled, fluid, strength_abv_pct, &mut faults));
+    let vessel = shape::vessel(definition, &filled, &mut faults);
+    let substances = substances::read(definition, &mut faults);
+    let worked = substances.and_then(|substances| work_out(definition, &filled, vessel, substances, &mut faults));
     let (Some(device), true) = (worked, faults.0.is_empty()) else {
         return Err(faults.0);
     };
@@ -60,38 +62,47 @@ pub fn check(definition: &Definition) -> Result<Checked, Vec<Fault>> {
 fn work_out(
     definition: &Definition,
     filled: &Filled,
-    fluid: WorkingFluid,
-    strength_abv_pct: f64,
+    vessel: Option<Vessel>,
+    substances: Substances,
     faults: &mut Faults,
 ) -> Option<Device> {
-    let max_temp_k = substances::max_temp_k(definition, &fluid, faults);
-    let vessel = shape::vessel(definition, filled, faults)?;
-    shape::check_with_fluid(definition, &vessel, &fluid, max_temp_k, faults);
-    if !faults.clean(&["balance", "head/felt/dry_mass_g", "head/felt/capacity_g"]) {
+    let fluid = &substances.fluid;
+    shape::check_bore(definition, fluid, faults);
+    let vessel = vessel?;
+    shape::check_expansion(definition, &vessel, fluid, substances.max_temp_k, faults);
+    if !faults.clean(&["balance", "head/felt", "evaporant"]) {
         return None;
     }
-    let density = fluid.liquid_density_kg_m3(STATED_TEMP_K);
-    let (hydrostatics, tip_volume_m3) = balance::settle(definition, filled, vessel, density, faults)?;
-    Some(assemble(
-        definition,
-        filled,
-        fluid,
-        hydrostatics,
-        [tip_volume_m3, strength_abv_pct, max_temp_k],
-    ))
+    let liquids = Liquids {
+        density_kg_m3: fluid.liquid_density_kg_m3(STATED_TEMP_K),
+        felt_kg: heat::felt_capacity_kg(definition, substances.strength_abv_pct),
+    };
+    let (hydrostatics, tip_volume_m3) = balance::settle(definition, filled, vessel, liquids, faults)?;
+    balance::check_vapour(&hydrostatics, tip_volume_m3, fluid, substances.max_temp_k, faults);
+    Some(assemble(definition, filled, substances, hydrostatics, tip_volume_m3))
 }
 
 fn assemble(
     definition: &Definition,
     filled: &Filled,
-    fluid: WorkingFluid,
+    substances: Substances,
     hydrostatics: Hydrostatics,
-    [tip_volume_m3, evaporant_abv_pct, max_temp_k]: [f64; 3],
+    tip_volume_m3: f64,
 ) -> Device {
     let vessel = *hydrostatics.vessel();
+    let Substances {
+        fluid,
+        strength_abv_pct,
+        max_temp_k,
+    } = substances;
     Device {
         tip_volume_m3,
-        head: heat::head(definition, filled, &vessel),
+        head: heat::head(
+            definition,
+            filled,
+            &vessel,
+            heat::felt_capacity_kg(definition, strength_abv_pct),
+        ),
         body: heat::body(definition, filled, &vessel, &fluid),
         conduction_w_k: filled.conduction_w_k,
         dip: Dip {
@@ -99,7 +110,7 @@ fn assemble(
             drain_fraction: filled.drain_fraction,
             vapour_reset: filled.vapour_reset,
         },
-        evaporant_abv_pct,
+        evaporant_abv_pct: strength_abv_pct,
         hardness_mg_l: filled.hardness_mg_l,
         lamp: definition.lamp.clone(),
         cup: definition.cup.as_ref().map(|given| cup(given, filled)),

@@ -1,12 +1,13 @@
 //! Figures that follow from a definition, for the user's eye: none of them is used by the cycle.
 
-use super::Device;
 use super::filled::Filled;
-use super::shape::{GRAVITY_M_S2, ML, MM, STATED_TEMP_K};
+use super::shape::{ML, MM, STATED_TEMP_K};
+use super::{Device, balance};
 use crate::model::air::{
     Air, GAS_CONSTANT_J_MOLK, MOLAR_MASS_WATER_KG_MOL, latent_heat_vaporisation_j_kg, saturation_pressure_pa,
     saturation_slope_pa_k,
 };
+use crate::model::fluids::WorkingFluid;
 use crate::model::transfer::{cylinder_heat_w_m2k, longwave_w_m2, sphere_film};
 
 /// Standard atmosphere [Pa].
@@ -41,8 +42,9 @@ pub struct Derived {
     pub lift_at_tip_mm: f64,
     /// Pressure that lifts so high at 20 °C [Pa].
     pub lift_at_tip_pa: f64,
-    /// How much colder than a body at 20 °C the head has to be for that [K].
-    pub lift_at_tip_k: f64,
+    /// How much colder than a body at 20 °C the head has to be for that [K]; `None` where the fluid cannot do it there:
+    /// the head would have to be colder than the fluid's numbers hold.
+    pub lift_at_tip_k: Option<f64>,
     /// Lean at the tip from upright [°]; `None` where the balance was given as a tip volume.
     pub lean_at_tip_deg: Option<f64>,
     /// Lean at which the beak meets the cup [°].
@@ -51,8 +53,9 @@ pub struct Derived {
     pub head_time_constant_s: f64,
     /// Time constant of body and tube in a still room [s].
     pub body_time_constant_s: f64,
-    /// Heat that goes from body to head in one cycle at 20 °C [J]: vapour for the lift, warm liquid, vapour in the dip.
-    pub heat_per_cycle_j: f64,
+    /// Heat that goes from body to head in one cycle at 20 °C [J]: vapour for the lift, warm liquid, vapour in the dip;
+    /// `None` with [`Self::lift_at_tip_k`].
+    pub heat_per_cycle_j: Option<f64>,
     /// Heat resistance of the head's wall and wet felt [K/W].
     pub felt_resistance_k_w: f64,
     /// Evaporating area of the head, beak included [cm²].
@@ -75,12 +78,12 @@ pub struct Derived {
 pub(super) fn derive(device: &Device, filled: &Filled) -> Derived {
     let (hydrostatics, fluid, tip_m3) = (&device.hydrostatics, &device.fluid, device.tip_volume_m3);
     let vessel = hydrostatics.vessel();
-    let lift_pa = fluid.liquid_density_kg_m3(STATED_TEMP_K) * GRAVITY_M_S2 * hydrostatics.lift_m(tip_m3);
+    let lift_pa = balance::lift_pa(hydrostatics, tip_m3, fluid);
     let (pressure_pa, hottest_pa) = (
         fluid.vapour_pressure_pa(STATED_TEMP_K),
         fluid.vapour_pressure_pa(device.max_temp_k),
     );
-    let lift_k = STATED_TEMP_K - fluid.saturation_temp_k(pressure_pa - lift_pa);
+    let lift_k = lift_k(fluid, pressure_pa - lift_pa);
     let fill_pct =
         100.0 * vessel.content_at_rest_m3(vessel.rest_level_m) / vessel.content_at_rest_m3(vessel.body_top_m());
     let growth = fluid.liquid_density_kg_m3(STATED_TEMP_K) / fluid.liquid_density_kg_m3(device.max_temp_k);
@@ -102,7 +105,7 @@ pub(super) fn derive(device: &Device, filled: &Filled) -> Derived {
         dip_angle_deg: filled.dip_angle_deg,
         head_time_constant_s: head_s,
         body_time_constant_s: body_s,
-        heat_per_cycle_j: heat_per_cycle_j(device, lift_k),
+        heat_per_cycle_j: lift_k.map(|difference_k| heat_per_cycle_j(device, difference_k)),
         felt_resistance_k_w: device.head.felt_resistance_k_w,
         wet_area_cm2: device.head.wet_area_m2 * 1e4,
         pressure_20c_kpa: pressure_pa / 1e3,
@@ -112,6 +115,12 @@ pub(super) fn derive(device: &Device, filled: &Filled) -> Derived {
         cup_volume_l: device.cup.as_ref().map(|cup| cup_l(cup.fill_depth_m, cup.area_m2)),
         cup_within_reach_l: device.cup.as_ref().map(|cup| cup_l(cup.reach_m, cup.area_m2)),
     }
+}
+
+/// How far below 20 °C the fluid's vapour has a pressure [K], within the range of its numbers.
+fn lift_k(fluid: &WorkingFluid, head_pa: f64) -> Option<f64> {
+    let coldest_pa = fluid.vapour_pressure_pa(fluid.valid_range_k().0);
+    (head_pa > coldest_pa).then(|| STATED_TEMP_K - fluid.saturation_temp_k(head_pa))
 }
 
 /// Heat stores of head and body when nothing is lifted beyond the tube, felt full of water [J/K].

@@ -8,7 +8,7 @@ use super::shape::{ML, MM, STATED_TEMP_K};
 use super::sphere::Sphere;
 use super::vessel::Vessel;
 use super::{Body, Head};
-use crate::model::fluids::WorkingFluid;
+use crate::model::fluids::{Liquid, WorkingFluid};
 
 /// Density of borosilicate glass 3.3 [kg/m³] [ISO3585].
 pub const GLASS_DENSITY_KG_M3: f64 = 2230.0;
@@ -25,8 +25,14 @@ pub const FELT_EMISSIVITY: f64 = 0.95;
 /// Long-wave emissivity of glass; remembered handbook value.
 pub const GLASS_EMISSIVITY: f64 = 0.90;
 
+/// Liquid the felt holds when full [kg]: the room given as grams of water, filled with a liquid of this strength.
+pub(super) fn felt_capacity_kg(definition: &Definition, strength_abv_pct: f64) -> f64 {
+    let density = |abv_pct: f64| Liquid::from_abv(1.0, abv_pct).density_kg_m3(STATED_TEMP_K);
+    definition.head.felt.capacity_g * 1e-3 * density(strength_abv_pct) / density(0.0)
+}
+
 /// The head: wet surface, resistance of wall and felt, dry heat store.
-pub(super) fn head(definition: &Definition, filled: &Filled, vessel: &Vessel) -> Head {
+pub(super) fn head(definition: &Definition, filled: &Filled, vessel: &Vessel, felt_capacity_kg: f64) -> Head {
     let felt = &definition.head.felt;
     let glass = Sphere {
         radius_m: 0.5 * definition.head.outer_diameter_mm * MM,
@@ -41,7 +47,7 @@ pub(super) fn head(definition: &Definition, filled: &Filled, vessel: &Vessel) ->
         felt_resistance_k_w: shell_resistance_k_w(&vessel.head, &glass, GLASS_CONDUCTIVITY_W_MK)
             + shell_resistance_k_w(&glass, &wet, WET_FELT_CONDUCTIVITY_W_MK),
         dry_capacity_j_k: GLASS_HEAT_J_KGK * glass_kg + FELT_HEAT_J_KGK * felt.dry_mass_g * 1e-3,
-        felt_capacity_kg: felt.capacity_g * 1e-3,
+        felt_capacity_kg,
         uptake_kg: filled.uptake_g * 1e-3,
         critical_share: filled.critical_share,
         exchange_share: filled.exchange_share,

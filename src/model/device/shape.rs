@@ -224,16 +224,10 @@ fn level_fault(vessel: &Vessel, volume_m3: f64, faults: &mut Faults) {
     }
 }
 
-/// Checks that need the fluid's own numbers: the bore against a locked bubble, the hottest liquid against the body.
-pub(super) fn check_with_fluid(
-    definition: &Definition,
-    vessel: &Vessel,
-    fluid: &WorkingFluid,
-    max_temp_k: f64,
-    faults: &mut Faults,
-) {
+/// Refuses a bore in which a bubble locks.
+pub(super) fn check_bore(definition: &Definition, fluid: &WorkingFluid, faults: &mut Faults) {
     let least_mm = 2.0 * capillary_length_m(fluid) / MM;
-    if definition.tube.bore_mm < least_mm {
+    if faults.clean(&["tube/bore_mm"]) && definition.tube.bore_mm < least_mm {
         let detail = format!(
             "expected at least {least_mm:.2} mm, twice the capillary length of {}, because a bubble locks in a narrower \
              tube and the head does not drain, found {} mm; widen the bore",
@@ -241,6 +235,16 @@ pub(super) fn check_with_fluid(
         );
         faults.add("tube/bore_mm", "bubble_locks", detail);
     }
+}
+
+/// Refuses a body that the hottest liquid fills.
+pub(super) fn check_expansion(
+    definition: &Definition,
+    vessel: &Vessel,
+    fluid: &WorkingFluid,
+    max_temp_k: f64,
+    faults: &mut Faults,
+) {
     let growth = fluid.liquid_density_kg_m3(STATED_TEMP_K) / fluid.liquid_density_kg_m3(max_temp_k);
     let hot_ml = definition.fluid.volume_ml * growth;
     let room_ml = vessel.content_at_rest_m3(vessel.body_top_m()) / ML;

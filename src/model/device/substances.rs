@@ -12,8 +12,32 @@ const WATER: &str = "water";
 /// 0 °C [K].
 const ZERO_CELSIUS_K: f64 = 273.15;
 
+/// What is inside and what wets the felt.
+#[derive(Debug, Clone)]
+pub(super) struct Substances {
+    /// Working fluid.
+    pub(super) fluid: WorkingFluid,
+    /// Strength of the evaporant [% by volume]; 0 for water.
+    pub(super) strength_abv_pct: f64,
+    /// Highest temperature allowed [K].
+    pub(super) max_temp_k: f64,
+}
+
+/// Reads the substances; `None` where there is no fluid to work with.
+pub(super) fn read(definition: &Definition, faults: &mut Faults) -> Option<Substances> {
+    let fluid = fluid(definition, faults);
+    let strength_abv_pct = strength_abv_pct(&definition.evaporant, faults);
+    let fluid = fluid?;
+    let max_temp_k = max_temp_k(definition, &fluid, faults);
+    Some(Substances {
+        fluid,
+        strength_abv_pct,
+        max_temp_k,
+    })
+}
+
 /// The working fluid, if name and constants are right.
-pub(super) fn fluid(definition: &Definition, faults: &mut Faults) -> Option<WorkingFluid> {
+fn fluid(definition: &Definition, faults: &mut Faults) -> Option<WorkingFluid> {
     let given = &definition.fluid;
     if given.name == CUSTOM_FLUID {
         return custom_fluid(definition, faults);
@@ -56,7 +80,7 @@ fn custom_fluid(definition: &Definition, faults: &mut Faults) -> Option<WorkingF
 }
 
 /// Strength of the evaporant [% by volume]; 0 for water.
-pub(super) fn strength_abv_pct(evaporant: &EvaporantDefinition, faults: &mut Faults) -> f64 {
+fn strength_abv_pct(evaporant: &EvaporantDefinition, faults: &mut Faults) -> f64 {
     let rows = evaporants();
     if !rows.iter().any(|row| row.name == evaporant.name) {
         let known = rows.iter().map(|row| row.name).collect();
@@ -83,7 +107,7 @@ pub(super) fn strength_abv_pct(evaporant: &EvaporantDefinition, faults: &mut Fau
 }
 
 /// The highest temperature allowed [K]: the maker's, or the fluid's own.
-pub(super) fn max_temp_k(definition: &Definition, fluid: &WorkingFluid, faults: &mut Faults) -> f64 {
+fn max_temp_k(definition: &Definition, fluid: &WorkingFluid, faults: &mut Faults) -> f64 {
     let Some(given_c) = definition
         .max_temperature_c
         .filter(|_| faults.clean(&["max_temperature_c"]))

@@ -112,8 +112,12 @@ impl Vessel {
 
     /// Lifted volume at which the head counts as full [m³].
     pub(super) fn head_full_m3(&self) -> f64 {
-        let below_mouth = self.head.cap_volume_m3(self.mouth_m());
-        self.tube_volume_m3() + HEAD_FULL_SHARE * self.head.volume_m3() - below_mouth
+        self.head_brimming_m3() - (1.0 - HEAD_FULL_SHARE) * self.head.volume_m3()
+    }
+
+    /// Lifted volume at which no vapour is left in the head [m³].
+    pub(super) fn head_brimming_m3(&self) -> f64 {
+        self.tube_volume_m3() + self.head.volume_m3() - self.head.cap_volume_m3(self.mouth_m())
     }
 
     /// Height of the tube's mouth above the head sphere's lowest point [m].
@@ -170,8 +174,7 @@ impl Vessel {
 
     /// Whether the tube's lower end lies free of liquid when the device leans by an angle with a volume lifted.
     ///
-    /// Highest point of the bore's end against the level in the body, both from the body's centre. What the pressure
-    /// pushes up while the device falls is not counted on: the safe side.
+    /// Highest point of the bore's end against the level in the body, both from the body's centre.
     pub(super) fn end_is_free(&self, lifted_m3: f64, lean_rad: f64) -> bool {
         let end = -(self.body.radius_m - self.tube_end_m) * lean_rad.cos() + self.bore_radius_m * lean_rad.sin();
         self.level_m(lifted_m3) - self.body.radius_m < end
