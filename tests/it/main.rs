@@ -7,7 +7,9 @@
 )]
 
 mod device;
+mod bad_csv;
 mod house_rules;
+mod intake_csv;
 mod weather;
 mod openapi;
 mod prediction;

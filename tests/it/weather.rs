@@ -316,8 +316,9 @@ fn milliseconds_sent_as_seconds_and_far_apart_times_are_refused() {
 
 /// Lincoln publishes both pressures; its elevation is 362.7 m. Tolerance 1.5 hPa on the mean and 4 hPa on single hours, not
 /// the few tenths of the formula: the national service takes the mean of twelve hours' temperature, and above 305 m adds a
-/// "plateau correction" that lowers sea-level pressure in winter (Pauley 1998, Weather and Forecasting 13:833, abstract).
-/// The sign found here, 1.0 hPa low in January and February, is that correction's. 4 hPa are 0.4 % of the pressure.
+/// "plateau correction" that lowers sea-level pressure in winter ("Problems with the mean sea level pressure field over
+/// the western United States", Monthly Weather Review 2004, abstract). The sign found here, 1.0 hPa low in January and
+/// February, is that correction's. 4 hPa are 0.4 % of the pressure.
 #[test]
 fn sea_level_reduction_agrees_with_a_station_that_publishes_both() {
     let file = std::fs::File::open(crate::data("lincoln_2023_jan_feb.csv")).unwrap();

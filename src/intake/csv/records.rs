@@ -157,22 +157,27 @@ impl<'a> Records<'a> {
         let Unquoter { parser, plain, ends } = &mut self.unquoter;
         plain.resize(self.text.len(), 0);
         parser.reset();
-        let (_, read, written, cells) = parser.read_record(&self.text, plain, ends);
-        // The end of the text ends the last cell.
-        let (result, _, _, last) = parser.read_record(&self.text[read..], &mut plain[written..], &mut ends[cells..]);
+        let (first, read, written, cells) = parser.read_record(&self.text, plain, ends);
+        // The end of the text ends the last cell. A row that ends before has a line end outside its quotes.
+        let (second, _, _, last) = match first {
+            ReadRecordResult::InputEmpty => parser.read_record(&[], &mut plain[written..], &mut ends[cells..]),
+            other => (other, 0, 0, 0),
+        };
         self.cells.clear();
         let mut start = 0;
         for end in &ends[..cells + last] {
             self.cells.push((start, *end as u32));
             start = *end as u32;
         }
+        let whole = read == self.text.len();
         std::mem::swap(&mut self.text, plain);
-        match result {
-            ReadRecordResult::Record => Ok(()),
+        match second {
+            ReadRecordResult::Record if whole => Ok(()),
             ReadRecordResult::OutputEndsFull => Err(self.too_wide()),
             _ => {
-                let detail = "expected cells; the row cannot be cut into them";
-                Err(WeatherFault::row(self.first_line, None, "bad_row", detail))
+                let detail =
+                    "a quote stands inside a cell that does not begin with one; double it inside quotes, or remove it";
+                Err(WeatherFault::row(self.first_line, None, "stray_quote", detail))
             }
         }
     }
@@ -256,6 +261,7 @@ mod tests {
         assert_eq!(code(b"\"a\nb\nc\nd\ne\nf\ng\nh\ni\nj\nk\nl\n"), "row_too_long");
         assert_eq!(code(b"1,2,3,4"), "too_many_cells");
         assert_eq!(code(b"a,\"b"), "open_quote");
+        assert_eq!(code(b"a\"x,b\nc\"\n"), "stray_quote");
         assert_eq!(all(b"12345678901234567890\r\n", &limits).unwrap().len(), 1);
     }
 
