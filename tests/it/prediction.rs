@@ -1,4 +1,11 @@
-//! Predictions: whole runs of the shelf device.
+//! Predictions: whole runs of the shelf device in made-up and real hours.
 
 mod air;
+mod attendance;
+mod bands;
+mod calendar;
+mod faults;
+mod real;
+mod regimes;
 mod sums;
+mod warnings;

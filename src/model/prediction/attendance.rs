@@ -61,20 +61,21 @@ impl Person {
         let mut record = HourRecord::default();
         let mut at_s = 0.0;
         while at_s < HOUR_S {
-            let visited = self.visit_if_time(machine, base_s + at_s, &forcing::at(forcing, at_s));
-            let until_s = self
-                .next_visit_s(base_s + at_s)
-                .map_or(HOUR_S, |s| (s - base_s).min(HOUR_S));
+            let now_s = base_s + at_s;
+            self.notice(now_s, machine.due());
+            let visited = self.visit_if_time(machine, now_s, &forcing::at(forcing, at_s));
+            self.notice(now_s, machine.due());
+            let until_s = self.next_visit_s(now_s).map_or(HOUR_S, |s| (s - base_s).min(HOUR_S));
             let stretch = machine.stretch(forcing, at_s, until_s, self.due.is_none());
-            let waiting = self.due.is_some();
-            if let (None, Some(cause)) = (self.due, stretch.due) {
-                self.fall_due(base_s + stretch.end_s, cause);
-            } else if stretch.end_s <= at_s {
+            let fell_due = self.due.is_none() && stretch.due.is_some();
+            let waited_s = self.due.map_or(0.0, |_| stretch.end_s - at_s);
+            self.notice(base_s + stretch.end_s, stretch.due);
+            record.add(&stretch, waited_s);
+            pieces.push(Piece::new(now_s, base_s + stretch.end_s, visited, &stretch));
+            if stretch.end_s <= at_s && !fell_due {
                 // A machine that neither moves nor says why would hang the run.
                 break;
             }
-            record.add(&stretch, if waiting { stretch.end_s - at_s } else { 0.0 });
-            pieces.push(Piece::new(base_s + at_s, base_s + stretch.end_s, visited, &stretch));
             at_s = stretch.end_s;
         }
         record.cup_drop_m = machine.cup_drop_m();
@@ -82,7 +83,9 @@ impl Person {
         record
     }
 
-    fn fall_due(&mut self, now_s: f64, cause: DueCause) {
+    /// Takes note that a visit is due, unless that is known.
+    fn notice(&mut self, now_s: f64, due: Option<DueCause>) {
+        let (Some(cause), None) = (due, self.due) else { return };
         self.due = Some(Due { since_s: now_s, cause });
         if self.attendance.policy == AttendancePolicy::WhenDue {
             let earliest_s = self.last_visit_s.map_or(now_s, |last| last + SHORTEST_BETWEEN_VISITS_S);

@@ -1,7 +1,7 @@
 //! The device as attendance sees it: something that runs for a while, falls due and can be refilled.
 
 use crate::model::air::ZERO_CELSIUS_K;
-use crate::model::cycle::{self, Forcing, HourForcing, Method, State, Stretch, Tuning};
+use crate::model::cycle::{self, DueCause, Forcing, HourForcing, Method, State, Stretch, Tuning};
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
 
@@ -12,6 +12,8 @@ use super::result::EndState;
 pub(super) trait Machine {
     /// Runs from one second of an hour to another, or to the second at which a visit falls due.
     fn stretch(&mut self, hour: &HourForcing, from_s: f64, to_s: f64, stop_when_due: bool) -> Stretch;
+    /// Why a visit is due, if it is.
+    fn due(&self) -> Option<DueCause>;
     /// Fills the cup and wets the felt; hands back what was filled in.
     fn refill(&mut self) -> Liquid;
     /// Whether a visit would freeze up at once.
@@ -44,6 +46,10 @@ impl Machine for RunningDevice<'_> {
             to_s,
             stop_when_due,
         )
+    }
+
+    fn due(&self) -> Option<DueCause> {
+        cycle::is_due(self.device, &self.state)
     }
 
     fn refill(&mut self) -> Liquid {

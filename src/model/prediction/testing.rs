@@ -49,7 +49,8 @@ impl Machine for ToyMachine {
         }
         let until_g = |level_g: f64| from_s + 3600.0 * (level_g - self.gone_g).max(0.0);
         let (due_s, dry_s) = (until_g(self.store_g), until_g(self.store_g + self.felt_g));
-        if stop_when_due && due_s <= to_s {
+        // As the cycle room does it: only falling due is told, not being due.
+        if stop_when_due && self.due().is_none() && due_s <= to_s {
             stretch.end_s = due_s;
             stretch.due = Some(DueCause::CupAtReach);
         }
@@ -60,6 +61,10 @@ impl Machine for ToyMachine {
         stretch.head_loss = Liquid::water(1e-3 * ran_s / 3600.0);
         self.gone_g += ran_s / 3600.0;
         stretch
+    }
+
+    fn due(&self) -> Option<DueCause> {
+        (self.gone_g >= self.store_g).then_some(DueCause::CupAtReach)
     }
 
     fn refill(&mut self) -> Liquid {
