@@ -9,6 +9,7 @@ use metrics_exporter_prometheus::PrometheusHandle;
 use super::middleware::rate_limit::RateLimit;
 use super::schema::Schemas;
 use crate::config::Config;
+use crate::service::Predictions;
 
 /// Shared by all requests; cheap to clone.
 #[derive(Clone)]
@@ -21,6 +22,7 @@ struct Inner {
     rate_limit: Option<RateLimit>,
     document: Bytes,
     schemas: Schemas,
+    predictions: Predictions,
 }
 
 impl App {
@@ -28,6 +30,7 @@ impl App {
     pub fn new(config: Config, document: &utoipa::openapi::OpenApi) -> Self {
         let value = serde_json::to_value(document).expect("the API description is plain data");
         Self(Arc::new(Inner {
+            predictions: Predictions::new(&config.runs, &config.limits),
             rate_limit: RateLimit::new(config.access.requests_per_minute),
             config,
             ready: AtomicBool::new(true),
@@ -65,6 +68,11 @@ impl App {
     /// The API description as served.
     pub fn document(&self) -> Bytes {
         self.0.document.clone()
+    }
+
+    /// The use case behind `/v1/predictions`.
+    pub fn predictions(&self) -> &Predictions {
+        &self.0.predictions
     }
 
     /// The schemas requests are checked against.

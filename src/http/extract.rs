@@ -13,8 +13,15 @@ use super::strict_json;
 /// The request's content type.
 ///
 /// # Errors
-/// 415 if it is missing or cannot be read.
+/// 415 if it is missing or cannot be read, or if the body as a whole is compressed.
 pub fn content_type(headers: &HeaderMap) -> Result<Mime, Problem> {
+    if headers
+        .get(header::CONTENT_ENCODING)
+        .is_some_and(|coding| coding != "identity")
+    {
+        let detail = "the body as a whole may not be compressed; a gzipped CSV goes into the part weather of a form";
+        return Err(Problem::new(ProblemCode::UnsupportedMediaType, detail));
+    }
     let value = headers.get(header::CONTENT_TYPE).and_then(|value| value.to_str().ok());
     let found = value.and_then(|text| text.parse().ok());
     found.ok_or_else(|| {

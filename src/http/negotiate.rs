@@ -2,6 +2,8 @@
 
 use axum::http::{HeaderMap, header};
 use mime::Mime;
+use serde::{Deserialize, Serialize};
+use utoipa::{IntoParams, ToSchema};
 
 use super::error::{FaultItem, Problem, ProblemCode};
 
@@ -41,6 +43,52 @@ impl Format {
             other => other.media_type(),
         }
     }
+}
+
+/// The twin of `Accept`, for links and spreadsheets.
+#[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema, IntoParams)]
+#[into_params(parameter_in = Query)]
+pub struct FormatQuery {
+    /// The twin of `Accept`, for links and spreadsheets; it wins.
+    #[param(inline)]
+    pub format: Option<FormatName>,
+}
+
+/// A format by name.
+#[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema)]
+#[serde(rename_all = "lowercase")]
+pub enum FormatName {
+    /// One document.
+    Json,
+    /// The hours as a table.
+    Csv,
+    /// The hours as one object a line.
+    Ndjson,
+}
+
+/// The twin of `Accept` where there is JSON alone.
+#[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema, IntoParams)]
+#[into_params(parameter_in = Query)]
+pub struct JsonFormatQuery {
+    /// The twin of `Accept`; it wins.
+    #[param(inline)]
+    pub format: Option<JsonFormatName>,
+}
+
+/// The one format there is.
+#[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema)]
+#[serde(rename_all = "lowercase")]
+pub enum JsonFormatName {
+    /// One document.
+    Json,
+}
+
+/// For resources that exist as JSON alone.
+///
+/// # Errors
+/// As [`choose`].
+pub fn json_only(headers: &HeaderMap, query: Option<&str>) -> Result<(), Problem> {
+    choose(headers, query, &[Format::Json]).map(drop)
 }
 
 /// Picks one of the formats on offer; the first is the default.

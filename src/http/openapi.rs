@@ -1,6 +1,8 @@
 //! The API's description: what stands above the operations, and the answers every operation can give.
 
 mod answers;
+mod bounds;
+mod examples;
 
 use utoipa::Modify;
 use utoipa::openapi::security::{ApiKey, ApiKeyValue, HttpAuthScheme, HttpBuilder, SecurityScheme};
@@ -28,7 +30,7 @@ pub const API_VERSION: &str = "1.0.0";
     ),
     security((), ("bearer" = []), ("api_key" = [])),
     modifiers(&Keys),
-    components(schemas(super::error::ProblemDocument)),
+    components(schemas(super::error::ProblemDocument, super::v1::predictions::HourRow)),
 )]
 struct Head;
 
@@ -55,7 +57,9 @@ pub fn head() -> OpenApi {
 
 /// Adds to the collected operations the answers all of them can give.
 pub fn complete(mut document: OpenApi) -> OpenApi {
+    bounds::add(document.components.get_or_insert_default());
     answers::add(&mut document);
+    examples::add(&mut document);
     document
 }
 

@@ -1,1 +1,20 @@
-//! Use cases.
+//! Use cases: resolve the device, read the weather, run the model. No words of any protocol.
+//!
+//! Reading order: [`PredictionOrder`] is what a caller wants, [`Predictions`] runs it, [`PredictionReport`] comes back,
+//! [`PredictError`] says why not.
+
+mod error;
+mod order;
+mod places;
+/// The records of the rooms below that callers of the service fill in and read.
+pub mod records;
+mod report;
+mod run;
+mod tables;
+
+pub use error::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
+pub use order::{DeviceChoice, Place, PredictionOrder, WeatherChecks, WeatherSource};
+pub use places::Places;
+pub use report::{PredictionReport, StallPoint};
+pub use run::{AVERAGED_HOURS_MAX, BAND_HOUR_SAMPLES_MAX, Predictions, Progress, RESOLVED_HOURS_MAX};
+pub use tables::{evaporants, example, examples, fluids};

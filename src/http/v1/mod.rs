@@ -1,1 +1,46 @@
 //! Version 1 of the resources: one file each, with handler, request, response and conversions.
+
+/// A struct of the wire with the very fields of a record, and the way to it and back.
+macro_rules! mirror {
+    ($(#[$meta:meta])* $name:ident = $record:ident { $($(#[$field_meta:meta])* $field:ident: $kind:ty,)* }) => {
+        $(#[$meta])*
+        #[derive(Debug, Clone, serde::Serialize, serde::Deserialize, utoipa::ToSchema)]
+        #[serde(deny_unknown_fields)]
+        pub struct $name {
+            $($(#[$field_meta])* pub $field: $kind,)*
+        }
+
+        impl From<$name> for $record {
+            fn from(wire: $name) -> Self {
+                Self { $($field: wire.$field),* }
+            }
+        }
+
+        impl From<$record> for $name {
+            fn from(record: $record) -> Self {
+                Self { $($field: record.$field),* }
+            }
+        }
+    };
+}
+
+/// A device as sent and as shown.
+pub mod device;
+/// `GET /v1/evaporants`
+pub mod evaporants;
+/// `GET /v1/example-devices`
+pub mod example_devices;
+/// `GET /v1/fluids`
+pub mod fluids;
+/// What a CSV file's columns mean.
+pub mod layout;
+/// Assumptions and cautions.
+pub mod notes;
+/// The options of a prediction.
+pub mod options;
+/// `POST /v1/predictions`
+pub mod predictions;
+/// Clock times of a week.
+pub mod schedule;
+/// The readings of a prediction.
+pub mod weather;

@@ -1,0 +1,20 @@
+//! What travels through the service unchanged: defined below, named here, so that callers need no room but this one.
+
+pub use crate::intake::csv::{
+    Ambiguous, Clock, ColumnMapping, Columns, Dialect, LabelName, Layout, Nonexistent, OWN_HEADER, RowFilter,
+    TimeLayout,
+};
+pub use crate::model::cycle::{HourState, Method, TracePoint};
+pub use crate::model::device::{
+    ALL_BOUNDS, BalanceDefinition, BodyDefinition, Bound, CupDefinition, Definition, Derived, DipDefinition,
+    EXTRA_MASSES_MAX, EvaporantDefinition, Example, ExtraMass, FeltDefinition, FluidDefinition, HeadDefinition,
+    LampDefinition, LampTarget, NAME_MAX_CHARACTERS, TubeDefinition,
+};
+pub use crate::model::fluids::{CustomFluid, CustomVapourPressure, EvaporantRow, Hazard, WorkingFluid};
+pub use crate::model::notes::{Assumption, Caution, Fault, Severity};
+pub use crate::model::prediction::{
+    Attendance, AttendancePolicy, Band, BandRange, BandRanges, Bands, ClockInterval, ClockSchedule, CycleTrace,
+    EndState, HealedBy, HourColumns, InitialState, LossG, ModelInfo, Options, Period, Prediction, ScheduleException,
+    Spell, StallHours, StallSpells, Totals, Visit, VisitCause,
+};
+pub use crate::model::weather::{Flag, HourlySeries, Label, RawReadings, SeriesReport, Stamp, WeatherFault};

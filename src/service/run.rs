@@ -1,0 +1,221 @@
+//! One prediction from order to report.
+
+use std::time::Instant;
+
+use super::places::{Abandoned, Places};
+use super::records::{Assumption, Caution, Definition, Derived, Fault, HourlySeries, Method, Prediction, WeatherFault};
+use super::{
+    DeviceChoice, HourLimit, OrderFault, PredictError, PredictionOrder, PredictionReport, StallPoint, WeatherSource,
+    example, examples,
+};
+use crate::config::{Limits, Runs};
+use crate::intake::csv;
+use crate::model::cycle::stall_humidity;
+use crate::model::device::{self, Device};
+use crate::model::prediction::{DEFAULT_AIR_SPEED_M_S, PredictionError, PredictionRequest, predict};
+use crate::model::weather::{RawReadings, RegulariseOptions, regularise};
+
+/// Most hours by the averaged method.
+pub const AVERAGED_HOURS_MAX: usize = 200_000;
+/// Most hours by the resolved method: three months.
+pub const RESOLVED_HOURS_MAX: usize = 2_208;
+/// Most hours times samples with bands: 200,000 hours with 32 samples.
+pub const BAND_HOUR_SAMPLES_MAX: usize = 6_400_000;
+
+/// Air temperatures for which the stall humidity is told [°C].
+const STALL_TEMPERATURES_C: [f64; 3] = [10.0, 20.0, 30.0];
+
+/// Told the hour-samples done and to do; returns false to stop.
+pub type Progress<'a> = &'a (dyn Fn(usize, usize) -> bool + Sync);
+
+/// Runs predictions; cheap to clone.
+#[derive(Debug, Clone)]
+pub struct Predictions {
+    places: Places,
+    limits: Limits,
+}
+
+impl Predictions {
+    /// As many at once as the settings say.
+    pub fn new(runs: &Runs, limits: &Limits) -> Self {
+        Self {
+            places: Places::new(runs.parallel, runs.waiting),
+            limits: limits.clone(),
+        }
+    }
+
+    /// Runs one order on the blocking threads when a place is free; dropping the future stops the run.
+    ///
+    /// # Errors
+    /// See [`PredictError`].
+    pub async fn run(&self, order: PredictionOrder) -> Result<PredictionReport, PredictError> {
+        let limits = self.limits.clone();
+        metrics::gauge!("predictions_waiting").set(self.places.waiting() as f64);
+        self.places
+            .run(move |abandoned| timed(&order, &limits, abandoned))
+            .await
+    }
+
+    /// Runs one order here and now, with progress; for the command line.
+    ///
+    /// # Errors
+    /// See [`PredictError`].
+    pub fn run_here(&self, order: &PredictionOrder, progress: Progress) -> Result<PredictionReport, PredictError> {
+        carry_out(order, &self.limits, progress)
+    }
+}
+
+fn timed(order: &PredictionOrder, limits: &Limits, abandoned: &Abandoned) -> Result<PredictionReport, PredictError> {
+    let started = Instant::now();
+    metrics::gauge!("predictions_running").increment(1.0);
+    let report = carry_out(order, limits, &|_, _| !abandoned.is_set());
+    metrics::gauge!("predictions_running").decrement(1.0);
+    metrics::histogram!("prediction_duration_seconds").record(started.elapsed().as_secs_f64());
+    report
+}
+
+fn carry_out(order: &PredictionOrder, limits: &Limits, progress: Progress) -> Result<PredictionReport, PredictError> {
+    let (device, series) = (checked_device(&order.device), hourly(order, limits));
+    let (device, series) = match (device, series) {
+        (Ok(device), Ok(series)) => (device, series),
+        (device, series) => {
+            let faults = device.err().into_iter().chain(series.err()).flatten().collect();
+            return Err(PredictError::Faults(faults));
+        }
+    };
+    check_length(order, series.known.len())?;
+    let prediction = predicted(order, &device.device, &series, progress)?;
+    Ok(report(order, device, series, prediction))
+}
+
+/// A sound device with the name of the example, if it is one.
+struct Known {
+    example: Option<String>,
+    definition: Definition,
+    device: Device,
+    derived: Derived,
+    assumptions: Vec<Assumption>,
+    cautions: Vec<Caution>,
+}
+
+fn checked_device(choice: &DeviceChoice) -> Result<Known, Vec<OrderFault>> {
+    let (example, definition) = match choice {
+        DeviceChoice::Own(definition) => (None, definition.as_ref().clone()),
+        DeviceChoice::Example(name) => (Some(name.clone()), example_definition(name)?),
+    };
+    let checked =
+        device::check(&definition).map_err(|faults| faults.into_iter().map(OrderFault::Device).collect::<Vec<_>>())?;
+    Ok(Known {
+        example,
+        definition,
+        device: checked.device,
+        derived: checked.derived,
+        assumptions: checked.assumptions,
+        cautions: checked.cautions,
+    })
+}
+
+fn example_definition(name: &str) -> Result<Definition, Vec<OrderFault>> {
+    let found = example(name).map(|example| example.definition);
+    found.ok_or_else(|| {
+        let names: Vec<&str> = examples().iter().map(|example| example.name).collect();
+        let detail = format!("expected one of {}; found {name:?}", names.join(", "));
+        vec![OrderFault::Example(Fault::new("", "unknown_example", detail))]
+    })
+}
+
+fn hourly(order: &PredictionOrder, limits: &Limits) -> Result<HourlySeries, Vec<OrderFault>> {
+    let in_weather = |faults: Vec<WeatherFault>| faults.into_iter().map(OrderFault::Weather).collect::<Vec<_>>();
+    let readings = readings(&order.weather, limits).map_err(in_weather)?;
+    let (defaults, checks) = (RegulariseOptions::default(), order.weather_checks);
+    let options = RegulariseOptions {
+        elevation_m: order.place.elevation_m,
+        max_gap_hours: checks.max_gap_hours.unwrap_or(defaults.max_gap_hours),
+        max_unknown_share: checks.max_unknown_share.unwrap_or(defaults.max_unknown_share),
+        accept_suspicious: checks.accept_suspicious,
+        ..defaults
+    };
+    regularise(readings, &options).map_err(in_weather)
+}
+
+fn readings(source: &WeatherSource, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
+    match source {
+        WeatherSource::Readings(readings) => Ok(readings.as_ref().clone()),
+        WeatherSource::Csv { file, layout } => {
+            let limits = csv::Limits {
+                max_decompressed_bytes: limits.decompressed_bytes as u64,
+                ..csv::Limits::default()
+            };
+            csv::read(file, layout.as_deref(), &limits)
+        }
+    }
+}
+
+fn check_length(order: &PredictionOrder, hours: usize) -> Result<(), PredictError> {
+    let options = &order.options;
+    let by_method = match options.method {
+        Method::Averaged => HourLimit::Averaged,
+        Method::Resolved => HourLimit::Resolved,
+    };
+    let samples = if options.bands { options.samples } else { 0 };
+    for (limit, found) in [(by_method, hours), (HourLimit::Bands, hours.saturating_mul(samples))] {
+        if found > limit.most() {
+            return Err(PredictError::TooMany { limit, found });
+        }
+    }
+    Ok(())
+}
+
+fn predicted(
+    order: &PredictionOrder,
+    device: &Device,
+    series: &HourlySeries,
+    progress: Progress,
+) -> Result<Prediction, PredictError> {
+    let request = PredictionRequest {
+        device,
+        series,
+        air_speed_m_s: order.place.air_speed_m_s,
+        options: order.options.clone(),
+    };
+    predict(&request, progress).map_err(|error| match error {
+        PredictionError::Cancelled => PredictError::Stopped,
+        PredictionError::Faults(faults) => PredictError::Faults(faults.into_iter().map(OrderFault::Options).collect()),
+    })
+}
+
+fn report(order: &PredictionOrder, known: Known, series: HourlySeries, prediction: Prediction) -> PredictionReport {
+    let stall_points = stall_points(order, &known.device, &series);
+    let assumptions = [known.assumptions, series.assumptions, prediction.assumptions.clone()].concat();
+    let mut cautions = known.cautions;
+    let repeated = |new: &Caution, had: &[Caution]| had.iter().any(|old| old.code == new.code && old.text == new.text);
+    for caution in &prediction.cautions {
+        if !repeated(caution, &cautions) {
+            cautions.push(caution.clone());
+        }
+    }
+    cautions.sort_by_key(|caution| std::cmp::Reverse(caution.severity));
+    PredictionReport {
+        example: known.example,
+        definition: known.definition,
+        lamp_hours: order.options.lamp_hours.clone(),
+        derived: known.derived,
+        stall_points,
+        hours: series.known.len(),
+        stamp: series.stamp,
+        weather: series.report,
+        prediction,
+        assumptions,
+        cautions,
+    }
+}
+
+fn stall_points(order: &PredictionOrder, device: &Device, series: &HourlySeries) -> Vec<StallPoint> {
+    let speed_m_s = order.place.air_speed_m_s.unwrap_or(DEFAULT_AIR_SPEED_M_S);
+    let pressure_pa = series.pressure_pa.iter().sum::<f64>() / series.pressure_pa.len() as f64;
+    let at = |celsius: f64| StallPoint {
+        air_temperature_c: celsius,
+        relative_humidity_pct: 100.0 * stall_humidity(device, celsius + 273.15, speed_m_s, pressure_pa),
+    };
+    STALL_TEMPERATURES_C.map(at).to_vec()
+}
