@@ -6,7 +6,7 @@ use dipcast::model::weather::{
 };
 
 /// A gentle week: temperature and humidity swing with the day.
-pub fn week() -> RawReadings {
+fn week() -> RawReadings {
     let hours = 168;
     let swing = |hour: usize| (hour as f64 / 24.0 * std::f64::consts::TAU).sin();
     RawReadings {

@@ -16,11 +16,11 @@ pub struct Limits {
 }
 
 impl Default for Limits {
-    /// Room for ten years of one-minute readings; weather compresses 5 to 40 fold, never 300 fold.
+    /// Room for 38 years of ten-minute readings, in about 150 MB of memory; weather compresses 5 to 40 fold, never 300 fold.
     fn default() -> Self {
         Self {
-            max_decompressed_bytes: 512 * 1024 * 1024,
-            max_rows: 5_000_000,
+            max_decompressed_bytes: 256 * 1024 * 1024,
+            max_rows: 2_000_000,
             max_fields: 1_000,
             max_ratio: 300,
             max_row_bytes: 64 * 1024,

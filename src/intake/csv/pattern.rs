@@ -233,7 +233,7 @@ fn month_name(text: &[u8]) -> Option<(i64, &[u8])> {
     let length = text.iter().take_while(|b| b.is_ascii_alphabetic()).count();
     let word = text[..length].to_ascii_lowercase();
     let fits = |name: &&str| length >= 3 && name.as_bytes().starts_with(&word);
-    let month = NAMES.iter().position(|name| fits(&name))? as i64 + 1;
+    let month = NAMES.iter().position(fits)? as i64 + 1;
     Some((month, text[length..].strip_prefix(b".").unwrap_or(&text[length..])))
 }
 

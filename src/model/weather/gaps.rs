@@ -39,8 +39,8 @@ pub(super) fn fill_all(values: &mut [f64]) -> usize {
 fn bridge(values: &mut [f64], before: usize, after: usize) {
     let (from, to) = (values[before], values[after]);
     let span = (after - before) as f64;
-    for hour in before + 1..after {
-        values[hour] = from + (to - from) * (hour - before) as f64 / span;
+    for (step, value) in values[before + 1..after].iter_mut().enumerate() {
+        *value = from + (to - from) * (step + 1) as f64 / span;
     }
 }
 

@@ -3,6 +3,7 @@
 use super::readings::RawReadings;
 use super::series::Sightings;
 use crate::model::air::saturation_pressure_pa;
+use crate::model::notes::Assumption;
 
 /// What the humidity of the readings came to.
 pub(super) struct Humidity {
@@ -14,8 +15,13 @@ pub(super) struct Humidity {
 
 /// Relative humidity and dew point that disagree by more than this are flagged [fraction].
 const DISAGREEMENT: f64 = 0.01;
+/// A disagreement that rounding cannot explain [fraction]; half of all rows must show it to be flagged by itself.
+const CONTRADICTION: f64 = 0.05;
 /// A dew point above the temperature by more than this is flagged by itself [K].
 const DEW_POINT_EXCESS_K: f64 = 0.5;
+
+/// 0 °C [K].
+const FREEZING_K: f64 = 273.15;
 
 #[derive(Default)]
 struct Seen {
@@ -23,6 +29,8 @@ struct Seen {
     by_relative_humidity: usize,
     fallback: Sightings,
     disagreement: Sightings,
+    contradiction: Sightings,
+    below_freezing_by_relative_humidity: bool,
     dew_point_above: Sightings,
     clipped: Sightings,
 }
@@ -71,8 +79,16 @@ impl Seen {
         }
         let vapour_pa = saturation_pressure_pa(dew_point_k);
         // With a missing temperature or humidity the comparison is NaN, and not a disagreement.
-        if !rh.is_nan() && (vapour_pa / saturation_pressure_pa(temp_k) - rh).abs() > DISAGREEMENT {
+        let apart = if rh.is_nan() {
+            rh
+        } else {
+            (vapour_pa / saturation_pressure_pa(temp_k) - rh).abs()
+        };
+        if apart > DISAGREEMENT {
             self.disagreement.add(row);
+        }
+        if apart > CONTRADICTION {
+            self.contradiction.add(row);
         }
         vapour_pa
     }
@@ -80,6 +96,7 @@ impl Seen {
     fn by_relative_humidity(&mut self, temp_k: f64, rh: f64, row: usize) -> f64 {
         self.by_relative_humidity += 1;
         self.fallback.add(row);
+        self.below_freezing_by_relative_humidity |= temp_k < FREEZING_K;
         if rh > 1.0 {
             self.clipped.add(row);
         }
@@ -87,7 +104,21 @@ impl Seen {
     }
 
     fn flag_into(self, raw: &mut RawReadings) {
+        if self.below_freezing_by_relative_humidity {
+            let what = "relative humidity below 0 °C";
+            let effect = "if the instrument means it over ice, the air is drier: by 1 % of the humidity for each degree of frost";
+            raw.assumptions.push(Assumption::new(
+                what,
+                "over liquid water, as WMO-No. 8 defines it",
+                effect,
+            ));
+        }
         let flags = &mut raw.flags;
+        if self.contradiction.count() * 2 > self.by_dew_point {
+            let detail = "more than half of the rows have a relative humidity and a dew point that differ by more than 5 points \
+                          of humidity: temperature or dew point in another unit, or humidity over ice? The dew point was used";
+            self.contradiction.flag_into(flags, "humidity_contradicts", detail);
+        }
         if raw.dew_point_k.is_some() {
             let detail = "rows without a dew point, in which the relative humidity was used";
             self.fallback
@@ -125,7 +156,7 @@ mod tests {
 
     #[test]
     fn the_dew_point_wins_and_a_contradiction_is_flagged() {
-        let mut sent = raw(20.0, 10.0, 0.60);
+        let mut sent = raw(20.0, 10.0, 0.55);
         let humidity = vapour_pressures(&mut sent);
         assert_eq!(humidity.vapour_pressure_pa[0], saturation_pressure_pa(283.15));
         assert_eq!((humidity.from, codes(&sent)), ("dew_point", vec!["humidity_disagrees"]));
@@ -158,6 +189,21 @@ mod tests {
             saturation_pressure_pa(293.15)
         );
         assert!(codes(&sent).contains(&"humidity_clipped"));
+    }
+
+    #[test]
+    fn fahrenheit_sent_as_celsius_in_winter_shows_as_contradiction() {
+        // 30 °F and 20 °F are -1.1 and -6.7 °C: 66 %; read as °C they would make 55 %.
+        let mut sent = raw(30.0, 20.0, 0.66);
+        vapour_pressures(&mut sent);
+        assert!(codes(&sent).contains(&"humidity_contradicts"));
+    }
+
+    #[test]
+    fn humidity_over_liquid_below_freezing_is_said() {
+        let mut sent = raw(-5.0, f64::NAN, 0.8);
+        vapour_pressures(&mut sent);
+        assert!(sent.assumptions[0].value.contains("over liquid water"));
     }
 
     #[test]
