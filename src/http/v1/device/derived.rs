@@ -30,8 +30,9 @@ pub struct DerivedFigures {
     pub lift_at_tip_mm: f64,
     /// Pressure that lifts so high at 20 °C [Pa].
     pub lift_at_tip_pa: f64,
-    /// How much colder than a body at 20 °C the head has to be for that [K].
-    pub lift_at_tip_k: f64,
+    /// How much colder than a body at 20 °C the head has to be for that [K]; null where no head is cold enough within the range of the fluid.
+    #[schema(required = true)]
+    pub lift_at_tip_k: Option<f64>,
     /// Lean from upright at the tip [°]; null where the tip volume was given.
     #[schema(required = true)]
     pub lean_at_tip_deg: Option<f64>,
@@ -41,8 +42,9 @@ pub struct DerivedFigures {
     pub head_time_constant_s: f64,
     /// Time constant of body and tube in a still room [s].
     pub body_time_constant_s: f64,
-    /// Heat from body to head in one cycle at 20 °C [J].
-    pub heat_per_cycle_j: f64,
+    /// Heat from body to head in one cycle at 20 °C [J]; null with `lift_at_tip_k`.
+    #[schema(required = true)]
+    pub heat_per_cycle_j: Option<f64>,
     /// Heat resistance of the head's wall and wet felt [K/W].
     pub felt_resistance_k_w: f64,
     /// Evaporating area of the head, beak included [cm²].
@@ -85,12 +87,12 @@ impl From<Derived> for DerivedFigures {
             body_fill_hottest_pct: rounded(record.body_fill_hottest_pct),
             lift_at_tip_mm: rounded(record.lift_at_tip_mm),
             lift_at_tip_pa: rounded(record.lift_at_tip_pa),
-            lift_at_tip_k: rounded(record.lift_at_tip_k),
+            lift_at_tip_k: record.lift_at_tip_k.map(rounded),
             lean_at_tip_deg: record.lean_at_tip_deg.map(rounded),
             dip_angle_deg: rounded(record.dip_angle_deg),
             head_time_constant_s: rounded(record.head_time_constant_s),
             body_time_constant_s: rounded(record.body_time_constant_s),
-            heat_per_cycle_j: rounded(record.heat_per_cycle_j),
+            heat_per_cycle_j: record.heat_per_cycle_j.map(rounded),
             felt_resistance_k_w: rounded(record.felt_resistance_k_w),
             wet_area_cm2: rounded(record.wet_area_cm2),
             pressure_20c_kpa: rounded(record.pressure_20c_kpa),
