@@ -57,19 +57,24 @@ impl HeadSide<'_> {
     /// Flow with the vapour side at `node_k`: the surface is colder by heat times the resistance of wall and felt.
     /// Returns the flow and the surface temperature [K].
     pub(super) fn at_node(&self, node_k: f64) -> (HeadFlow, f64) {
+        self.at_node_near(node_k, node_k)
+    }
+
+    /// The same, searched from a surface temperature near the answer.
+    pub(super) fn at_node_near(&self, node_k: f64, near_k: f64) -> (HeadFlow, f64) {
         let resistance = self.device.head.felt_resistance_k_w;
-        let miss = |surface_k: f64, flow: &HeadFlow| surface_k + resistance * flow.heat_w - node_k;
-        let (mut older_k, mut older) = (node_k, miss(node_k, &self.at_surface(node_k)));
-        let mut surface_k = node_k - older / 1.05;
+        let mut surface_k = near_k;
+        let mut older: Option<(f64, f64)> = None;
         for _ in 0..20 {
             let flow = self.at_surface(surface_k);
-            let now = miss(surface_k, &flow);
-            if now.abs() < 1e-10 || now == older {
+            let miss_k = surface_k + resistance * flow.heat_w - node_k;
+            if miss_k.abs() < 1e-10 {
                 return (flow, surface_k);
             }
-            let next_k = surface_k - now * (surface_k - older_k) / (now - older);
-            (older_k, older) = (surface_k, now);
-            surface_k = next_k;
+            // One degree of surface moves the miss by little more than a degree; the secant knows better from then on.
+            let slope = older.map_or(1.05, |(k, miss)| (miss_k - miss) / (surface_k - k));
+            older = Some((surface_k, miss_k));
+            surface_k -= miss_k / if slope.is_finite() && slope > 0.2 { slope } else { 1.05 };
         }
         (self.at_surface(surface_k), surface_k)
     }

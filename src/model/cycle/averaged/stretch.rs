@@ -1,6 +1,5 @@
 //! A stretch of time cut into pieces over which the answer changes little.
 
-use super::super::cup;
 use super::super::ledger::{DRIED_OUT_WETNESS, book_cup, book_felt, cup_drop_m, has_supply, is_due, wetness};
 use super::super::types::{Forcing, HourForcing, HourState, State, Stretch};
 use super::respond::{Plant, Response, respond};
@@ -27,8 +26,15 @@ pub(in crate::model::cycle) fn advance(
     };
     while out.end_s < to_s - 1e-6 {
         let was_due = is_due(plant.device, state);
-        let piece = next_piece(plant, state, hour, out.end_s, to_s);
+        let mut piece = next_piece(plant, state, hour, out.end_s, to_s);
+        let before = (*state, out);
         piece.book(plant, state, hour, &mut out);
+        if piece.supply && state.cup.total_kg() > 0.0 && is_out_of_reach(plant.device, state) {
+            piece.cut_at_reach(plant, &before.0, state);
+            (*state, out) = before;
+            piece.end = respond(plant, state, &hour.at(out.end_s + piece.duration_s));
+            piece.book(plant, state, hour, &mut out);
+        }
         let due = is_due(plant.device, state);
         if stop_when_due && due.is_some() && was_due.is_none() {
             out.due = due;
@@ -104,9 +110,26 @@ fn longest_s(plant: Plant, state: &State, answer: &Response, supply: bool) -> f6
     base_s.min((above_kg.max(0.04 * head.felt_capacity_kg) / loss_kg_s).max(SHORTEST_S))
 }
 
+/// A piece that passes the reach by less than this is not cut again [m].
+const REACH_SLACK_M: f64 = 1e-7;
+
+fn is_out_of_reach(device: &crate::model::device::Device, state: &State) -> bool {
+    device
+        .cup
+        .as_ref()
+        .is_some_and(|cup| cup_drop_m(device, state) > cup.reach_m + REACH_SLACK_M)
+}
+
 impl Piece {
-    fn book(mut self, plant: Plant, state: &mut State, hour: &HourForcing, out: &mut Stretch) {
-        self.cut_at_reach(plant, state, hour);
+    /// Ends the piece where the level falls out of the beak's reach, the level falling evenly between two states.
+    fn cut_at_reach(&mut self, plant: Plant, before: &State, after: &State) {
+        let Some(cup) = &plant.device.cup else { return };
+        let (from_m, to_m) = (cup_drop_m(plant.device, before), cup_drop_m(plant.device, after));
+        let share = ((cup.reach_m - from_m) / (to_m - from_m)).clamp(0.0, 1.0);
+        self.duration_s = (self.duration_s * share).max(0.01);
+    }
+
+    fn book(&self, plant: Plant, state: &mut State, hour: &HourForcing, out: &mut Stretch) {
         let duration_s = self.duration_s;
         let settling_s = 0.5 * (self.start.settling_s + self.end.settling_s);
         let drift_k_s = (self.end.body_k - self.start.body_k) / duration_s;
@@ -137,31 +160,6 @@ impl Piece {
         state.head_temp_k = self.end.head_k + last_off_k;
         if runs[1] == 0.0 && wetness(plant.device, &state.felt) <= DRIED_OUT_WETNESS {
             state.dried_out = true;
-        }
-    }
-
-    /// Ends the piece where the level falls out of the beak's reach, if it does.
-    fn cut_at_reach(&mut self, plant: Plant, state: &mut State, hour: &HourForcing) {
-        let (Some(cup), true) = (&plant.device.cup, self.supply) else {
-            return;
-        };
-        let mean = |s: usize| 0.5 * (self.start.loss_kg_s[s] + self.end.loss_kg_s[s]);
-        let middle = hour.at(self.from_s + 0.5 * self.duration_s);
-        let side = cup::CupSide::of(cup, plant.device.evaporant_abv_pct, plant.tuning, &middle, state);
-        let (_, cup_loss) = side.carry(state.cup_temp_k, self.duration_s);
-        let filling_kg = plant.device.head.felt_capacity_kg - state.felt.total_kg();
-        let head_kg = if self.start.running() || self.end.running() {
-            (mean(0) + mean(1)) * self.duration_s + filling_kg
-        } else {
-            0.0
-        };
-        let out_kg = cup_loss[0] * self.duration_s + cup_loss[1] * self.duration_s + cup.shared_by * head_kg;
-        let per_m = state.cup.density_kg_m3(state.cup_temp_k) * cup.area_m2;
-        let left_kg = (cup.reach_m - cup_drop_m(plant.device, state)) * per_m;
-        if out_kg > left_kg && out_kg > 0.0 {
-            let shortest_s = self.duration_s.min(1.0);
-            self.duration_s = (self.duration_s * left_kg / out_kg).max(shortest_s);
-            self.end = respond(plant, state, &hour.at(self.from_s + self.duration_s));
         }
     }
 

@@ -32,6 +32,8 @@ pub(super) struct Between<'a> {
     pub(super) fixed_m3: f64,
     /// Factor on the allowed error: 1, or smaller to prove convergence.
     pub(super) fineness: f64,
+    /// Head less felt surface where the flow was last asked for: the next search starts there [K].
+    pub(super) felt_drop_k: std::cell::Cell<f64>,
 }
 
 /// Why a step ended.
@@ -84,7 +86,9 @@ impl Between<'_> {
     fn slope(&self, second: f64, y: &Vector) -> Vector {
         let nodes = self.unpack(y);
         let forcing = self.hour.at(second);
-        let (flow, _) = head_side(self.plant, &self.state, &forcing).at_node(nodes.head_k);
+        let near_k = nodes.head_k - self.felt_drop_k.get();
+        let (flow, surface_k) = head_side(self.plant, &self.state, &forcing).at_node_near(nodes.head_k, near_k);
+        self.felt_drop_k.set(nodes.head_k - surface_k);
         let gain_w = body_gain_w(self.plant.device, self.plant.tuning, &forcing, nodes.body_k);
         let conducted_w = self.plant.device.conduction_w_k * (nodes.body_k - nodes.head_k);
         let (to_body_w, from_head_w) = (gain_w - conducted_w, flow.heat_w - conducted_w);
@@ -190,18 +194,21 @@ impl Between<'_> {
         let mut at_short = self.watched(from) - level;
         let mut reached = dormand_prince(&slope, second, from, step_s).0;
         let mut at_long = self.watched(&reached) - level;
+        let mut side = 0;
         for _ in 0..50 {
-            if at_long.abs() < 1e-12 * scale || long_s - short_s < 1e-9 {
+            if at_long.abs() < 1e-11 * scale || long_s - short_s < 1e-9 {
                 break;
             }
-            let share = (at_short / (at_short - at_long)).clamp(0.02, 0.98);
-            let try_s = short_s + share * (long_s - short_s);
+            // Illinois variant of regula falsi: the end that stays twice counts half.
+            let try_s = short_s + (long_s - short_s) * at_short / (at_short - at_long);
             let state = dormand_prince(&slope, second, from, try_s).0;
             let here = self.watched(&state) - level;
             if here == 0.0 || (here > 0.0) == (at_long > 0.0) {
-                (long_s, at_long, reached) = (try_s, here, state);
+                at_short *= if side == 1 { 0.5 } else { 1.0 };
+                (long_s, at_long, reached, side) = (try_s, here, state, 1);
             } else {
-                (short_s, at_short) = (try_s, here);
+                at_long *= if side == -1 { 0.5 } else { 1.0 };
+                (short_s, at_short, side) = (try_s, here, -1);
             }
         }
         (long_s, reached)

@@ -161,6 +161,7 @@ impl<'a> Run<'a> {
             phase,
             fixed_m3,
             fineness: self.fineness,
+            felt_drop_k: std::cell::Cell::new(0.0),
         }
     }
 
