@@ -12,6 +12,9 @@ use crate::model::weather::WeatherFault;
 /// Cells no limit may go beyond.
 const MOST_FIELDS: usize = 65_536;
 
+/// Lines allowed beyond two for each allowed row: blank lines, comments and quoted line ends are counted too.
+const PREAMBLE_LINES: usize = 2000;
+
 /// Rows of a file, one after another.
 pub(super) struct Records<'a> {
     source: Box<dyn BufRead + 'a>,
@@ -19,6 +22,7 @@ pub(super) struct Records<'a> {
     comment: Option<u8>,
     max_row_bytes: usize,
     max_fields: usize,
+    max_lines: usize,
     lines: usize,
     first_line: usize,
     text: Vec<u8>,
@@ -35,6 +39,7 @@ impl<'a> Records<'a> {
             comment,
             max_row_bytes: limits.max_row_bytes.min(u32::MAX as usize),
             max_fields: limits.max_fields.min(MOST_FIELDS),
+            max_lines: limits.max_rows.saturating_mul(2).saturating_add(PREAMBLE_LINES),
             lines: 0,
             first_line: 0,
             text: Vec::new(),
@@ -101,6 +106,13 @@ impl<'a> Records<'a> {
             return Ok(false);
         }
         self.lines += 1;
+        if self.lines > self.max_lines {
+            let detail = format!(
+                "expected at most {} lines, blank ones and comments included; the file has more",
+                self.max_lines
+            );
+            return Err(WeatherFault::whole("too_many_rows", detail));
+        }
         if self.text.last() == Some(&b'\n') {
             self.text.pop();
             if self.text.last() == Some(&b'\r') {
