@@ -12,9 +12,9 @@ use crate::model::fluids::{Liquid, WorkingFluid};
 
 /// Density of borosilicate glass 3.3 [kg/m³] [ISO3585].
 pub const GLASS_DENSITY_KG_M3: f64 = 2230.0;
-/// Specific heat of borosilicate glass [J/(kg K)] [MakeItFrom2020].
+/// Specific heat of borosilicate glass [J/(kg K)] [MakeItFrom2026].
 pub const GLASS_HEAT_J_KGK: f64 = 830.0;
-/// Conductivity of borosilicate glass near 20 °C [W/(m K)]: the middle of 0.96 to 1.2 [Matmatch2020].
+/// Conductivity of borosilicate glass near 20 °C [W/(m K)]: the middle of 0.96 to 1.2 [Matmatch2026].
 pub const GLASS_CONDUCTIVITY_W_MK: f64 = 1.1;
 /// Specific heat of dry felt [J/(kg K)]: dry cotton 1220 to 1350, dry wool 1360 [MortonHearle2008].
 pub const FELT_HEAT_J_KGK: f64 = 1340.0;

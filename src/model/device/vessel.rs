@@ -180,3 +180,65 @@ impl Vessel {
         self.level_m(lifted_m3) - self.body.radius_m < end
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    const CELL_M: f64 = 0.2e-3;
+    const LEAN_RAD: f64 = 0.3;
+
+    /// Cells of a sphere that a condition keeps, as height against gravity and forward offset when leaning [m].
+    fn cells(sphere: Sphere, centre_m: f64, keep: impl Fn(f64, f64, f64) -> bool) -> Vec<(f64, f64)> {
+        let count = (2.0 * sphere.radius_m / CELL_M).ceil() as i32;
+        let place = |index: i32| (f64::from(index) + 0.5) * CELL_M - sphere.radius_m;
+        let mut kept = Vec::new();
+        for (i, j, k) in (0..count).flat_map(|i| (0..count).flat_map(move |j| (0..count).map(move |k| (i, j, k)))) {
+            let (x, y, z) = (place(i), place(j), place(k));
+            if x * x + y * y + z * z < sphere.radius_m.powi(2) && keep(x, y, centre_m + z) {
+                let along = centre_m + z;
+                kept.push((
+                    along * LEAN_RAD.cos() - x * LEAN_RAD.sin(),
+                    x * LEAN_RAD.cos() + along * LEAN_RAD.sin(),
+                ));
+            }
+        }
+        kept
+    }
+
+    /// Forward moment of a volume that lies lowest among the cells, its surface level [m⁴].
+    fn settled_moment(mut cells: Vec<(f64, f64)>, volume_m3: f64) -> f64 {
+        cells.sort_by(|a, b| a.0.total_cmp(&b.0));
+        let wet = (volume_m3 / CELL_M.powi(3)).round() as usize;
+        cells[..wet].iter().map(|cell| cell.1).sum::<f64>() * CELL_M.powi(3)
+    }
+
+    #[test]
+    fn a_leaning_device_filled_cell_by_cell_has_the_same_moment() {
+        let mut vessel = Vessel {
+            body: Sphere { radius_m: 0.0152 },
+            head: Sphere { radius_m: 0.0117 },
+            bore_radius_m: 0.0025,
+            tube_radius_m: 0.0035,
+            tube_top_m: 0.110,
+            tube_end_m: 0.003,
+            rest_level_m: 0.0,
+        };
+        vessel.rest_level_m = vessel.rest_level_for_m(9.5e-6).expect("it fits");
+        let lifted = 3.0e-6;
+        let in_head = lifted - vessel.tube_volume_m3();
+        let around_tube =
+            |x: f64, y: f64, z: f64| x * x + y * y > vessel.tube_radius_m.powi(2) || z < vessel.tube_end_m;
+        let body = cells(vessel.body, vessel.body.radius_m, around_tube);
+        let head = cells(vessel.head, vessel.head_centre_m(), |_, _, z| z > vessel.tube_top_m);
+        let outside = vessel.outside_m3(vessel.level_m(lifted));
+        let column = vessel.bore_m2() * 0.5 * (vessel.tube_top_m.powi(2) - vessel.tube_end_m.powi(2)) * LEAN_RAD.sin();
+        let by_cells = settled_moment(body, outside) + column + settled_moment(head, in_head);
+        let by_formula = vessel.liquid_moment(lifted).0 * LEAN_RAD.sin();
+        // 0.2 mm cells, and the submerged tube is cut level in the formula: 0.03 % found.
+        assert!(
+            (by_formula / by_cells - 1.0).abs() < 0.002,
+            "{by_formula:e} against {by_cells:e}"
+        );
+    }
+}

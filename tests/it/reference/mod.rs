@@ -2,6 +2,7 @@
 //! head of each file under `tests/reference` and `tests/data`, or beside the number.
 
 mod air;
+mod device;
 mod fluids;
 mod table;
 mod transfer;
