@@ -13,7 +13,9 @@
 //! ```
 //!
 //! Reading order: `layout` says what a mapping is and `layout_check` what is wrong with one; `source` turns bytes into
-//! text, `records` text into rows, `pattern` and `clock` time cells into instants, `number` and `plan` cells into SI values.
+//! text, `records` text into rows, `pattern`, `shown` and `clock` time cells into instants, `number` and `plan` cells into
+//! SI values, and
+//! `rows` puts them together.
 
 mod clock;
 mod faults;
@@ -26,6 +28,10 @@ mod pattern;
 mod plan;
 mod read;
 mod records;
+mod repeated_hour;
+mod rows;
+mod said;
+mod shown;
 mod sniff;
 mod source;
 

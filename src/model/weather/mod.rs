@@ -11,6 +11,7 @@ mod order;
 mod pressure;
 mod readings;
 mod regularise;
+mod sanity;
 mod screen;
 mod series;
 mod steps;
