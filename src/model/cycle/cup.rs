@@ -23,14 +23,8 @@ pub(super) struct CupFlow {
 }
 
 /// Fall of the level below the brim mark [m].
-pub(super) fn drop_m(cup: &Cup, full: &Liquid, current: &Liquid, temp_k: f64) -> f64 {
-    (full.total_kg() - current.total_kg()) / (current.density_kg_m3(temp_k) * cup.area_m2)
-}
-
-/// Liquid a cup holds when filled to the brim mark, at 20 °C.
-pub(super) fn full(cup: &Cup, abv_pct: f64) -> Liquid {
-    let litre = Liquid::from_abv(1.0, abv_pct);
-    litre.scaled(litre.density_kg_m3(293.15) * cup.area_m2 * cup.fill_depth_m)
+pub(super) fn drop_m(cup: &Cup, current: &Liquid, temp_k: f64) -> f64 {
+    (cup.full.total_kg() - current.total_kg()) / (current.density_kg_m3(temp_k) * cup.area_m2)
 }
 
 /// One cup in one forcing.
@@ -45,8 +39,8 @@ pub(super) struct CupSide<'a> {
 
 impl<'a> CupSide<'a> {
     /// The cup as `state` has it.
-    pub(super) fn of(cup: &'a Cup, abv_pct: f64, tuning: &'a Tuning, forcing: &'a Forcing, state: &State) -> Self {
-        let drop_m = drop_m(cup, &full(cup, abv_pct), &state.cup, state.cup_temp_k).max(0.0);
+    pub(super) fn of(cup: &'a Cup, tuning: &'a Tuning, forcing: &'a Forcing, state: &State) -> Self {
+        let drop_m = drop_m(cup, &state.cup, state.cup_temp_k).max(0.0);
         let gap_m = (cup.freeboard_m + drop_m).min(cup.freeboard_m + cup.fill_depth_m);
         Self {
             cup,

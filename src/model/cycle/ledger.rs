@@ -1,6 +1,6 @@
 //! The books of liquid: what felt and cup lose, what the beak brings, and when a person is needed.
 
-use super::cup::{self, CupSide};
+use super::cup::{CupSide, drop_m};
 use super::types::{DueCause, Forcing, State, Stretch, Tuning};
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
@@ -19,10 +19,7 @@ pub(super) fn wetness(device: &Device, felt: &Liquid) -> f64 {
 pub fn cup_drop_m(device: &Device, state: &State) -> f64 {
     match &device.cup {
         None => 0.0,
-        Some(cup) => {
-            let full = cup::full(cup, device.evaporant_abv_pct);
-            cup::drop_m(cup, &full, &state.cup, state.cup_temp_k).max(0.0)
-        }
+        Some(cup) => drop_m(cup, &state.cup, state.cup_temp_k).max(0.0),
     }
 }
 
@@ -41,7 +38,7 @@ pub fn is_due(device: &Device, state: &State) -> Option<DueCause> {
 pub fn refill(device: &Device, state: &mut State) -> Liquid {
     let abv = device.evaporant_abv_pct;
     let felt = Liquid::from_abv(device.head.felt_capacity_kg, abv);
-    let cup = device.cup.as_ref().map(|cup| cup::full(cup, abv)).unwrap_or_default();
+    let cup = device.cup.as_ref().map(|cup| cup.full).unwrap_or_default();
     let poured = if abv > 0.0 {
         felt.plus(cup)
     } else {
@@ -118,7 +115,7 @@ pub(super) fn book_cup(
     if state.cup.total_kg() <= 0.0 || duration_s <= 0.0 {
         return;
     }
-    let side = CupSide::of(cup, device.evaporant_abv_pct, tuning, forcing, state);
+    let side = CupSide::of(cup, tuning, forcing, state);
     let (temp_k, rate) = side.carry(state.cup_temp_k, duration_s);
     let before = state.cup;
     state.cup = less(

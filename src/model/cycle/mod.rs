@@ -25,7 +25,7 @@ impl State {
     /// Cup full to the brim mark, felt wet, temperatures settled in the given air, a dip just over.
     pub fn settled(device: &Device, tuning: &Tuning, forcing: &Forcing) -> State {
         let abv = device.evaporant_abv_pct;
-        let cup = device.cup.as_ref().map(|cup| cup::full(cup, abv)).unwrap_or_default();
+        let cup = device.cup.as_ref().map(|cup| cup.full).unwrap_or_default();
         let mut state = State {
             head_temp_k: forcing.air.temp_k,
             body_temp_k: forcing.air.temp_k,
@@ -40,7 +40,7 @@ impl State {
             memo: None,
         };
         if let Some(cup) = &device.cup {
-            state.cup_temp_k = cup::CupSide::of(cup, abv, tuning, forcing, &state).settled_k();
+            state.cup_temp_k = cup::CupSide::of(cup, tuning, forcing, &state).settled_k();
         }
         let nodes = averaged::settled_nodes(Plant { device, tuning }, &state, forcing);
         (state.head_temp_k, state.body_temp_k, state.lifted_m3) = (nodes.head_k, nodes.body_k, nodes.lifted_m3);

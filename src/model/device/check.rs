@@ -10,6 +10,7 @@ use super::shape::{MM, STATED_TEMP_K};
 use super::substances::{self, Substances};
 use super::vessel::Vessel;
 use super::{Cup, Device, Dip, assumptions, cautions, derived, heat, shape, sizes};
+use crate::model::fluids::Liquid;
 use crate::model::notes::{Assumption, Caution, Fault};
 
 /// A sound device and what goes with it.
@@ -113,7 +114,10 @@ fn assemble(
         evaporant_abv_pct: strength_abv_pct,
         hardness_mg_l: filled.hardness_mg_l,
         lamp: definition.lamp.clone(),
-        cup: definition.cup.as_ref().map(|given| cup(given, filled)),
+        cup: definition
+            .cup
+            .as_ref()
+            .map(|given| cup(given, filled, strength_abv_pct)),
         max_temp_k,
         liquid_heat_j_m3k: heat::liquid_heat_j_m3k(&fluid),
         hydrostatics,
@@ -121,12 +125,16 @@ fn assemble(
     }
 }
 
-fn cup(given: &CupDefinition, filled: &Filled) -> Cup {
+fn cup(given: &CupDefinition, filled: &Filled, strength_abv_pct: f64) -> Cup {
     let diameter_m = given.opening_diameter_mm * MM;
+    let area_m2 = 0.25 * std::f64::consts::PI * diameter_m * diameter_m;
+    let fill_depth_m = (given.depth_mm - filled.freeboard_mm) * MM;
+    let strength = Liquid::from_abv(1.0, strength_abv_pct);
     Cup {
         diameter_m,
-        area_m2: 0.25 * std::f64::consts::PI * diameter_m * diameter_m,
-        fill_depth_m: (given.depth_mm - filled.freeboard_mm) * MM,
+        area_m2,
+        fill_depth_m,
+        full: strength.scaled(strength.density_kg_m3(STATED_TEMP_K) * area_m2 * fill_depth_m),
         freeboard_m: filled.freeboard_mm * MM,
         reach_m: given.reach_mm * MM,
         covered_fraction: filled.covered_fraction,

@@ -132,6 +132,8 @@ pub struct Cup {
     pub area_m2: f64,
     /// Depth of liquid when filled to the brim mark [m].
     pub fill_depth_m: f64,
+    /// What it holds when filled to the brim mark at 20 °C.
+    pub full: crate::model::fluids::Liquid,
     /// Brim mark below the rim [m].
     pub freeboard_m: f64,
     /// Fall of the level at which the beak misses it [m].

@@ -84,6 +84,9 @@ fn polynomial(coefficients: &[f64], x: f64) -> f64 {
 /// Outside that range of temperature the nearest end is taken, since the polynomial bends away quickly.
 pub(super) fn mixture_density_kg_m3(mass_fraction: f64, temp_c: f64) -> f64 {
     let t = temp_c.clamp(-20.0, 40.0) - 20.0;
+    if mass_fraction == 0.0 {
+        return AT_20_C[0] + t * polynomial(&WATER, t);
+    }
     let mixed: f64 = MIXED.iter().rev().fold(0.0, |sum, row| {
         (sum + mass_fraction * polynomial(row, mass_fraction)) * t
     });
@@ -97,6 +100,9 @@ pub(super) fn abv_pct(mass_fraction: f64) -> f64 {
 
 /// Ethanol mass fraction [0-1] of a strength [% ABV at 20 °C, 0-100]; strengths outside are held at the ends.
 pub(super) fn mass_fraction(abv: f64) -> f64 {
+    if abv <= 0.0 {
+        return 0.0;
+    }
     let (mut low, mut high) = (0.0, 1.0);
     for _ in 0..52 {
         let middle = 0.5 * (low + high);
@@ -106,7 +112,7 @@ pub(super) fn mass_fraction(abv: f64) -> f64 {
             high = middle
         }
     }
-    if abv <= 0.0 { 0.0 } else { 0.5 * (low + high) }
+    0.5 * (low + high)
 }
 
 #[cfg(test)]

@@ -17,13 +17,26 @@ const CLOSURE: f64 = 1e-9;
 )]
 pub(super) enum Balance<'a> {
     /// It cycles.
-    Cycling {
-        local: Local<'a>,
-        cycle: Cycle,
-        body_k: f64,
-    },
+    Cycling { local: Local<'a>, closed: Closed },
     /// It rests; the driving power at the tip is what is missing [W, negative].
     Resting { driving_w: f64, slope_w_k: f64 },
+}
+
+/// A cycle that returns to itself.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Closed {
+    pub(super) cycle: Cycle,
+    /// Body temperature at the tip [K].
+    pub(super) body_k: f64,
+    /// Slope of the power imbalance over what the two smooth curves alone would give.
+    slope_share: f64,
+}
+
+impl Closed {
+    /// Is so little power left at the tip that the static balance, which takes no curve for granted, has to be asked?
+    fn is_close_to_stall(&self) -> bool {
+        self.cycle.tip_driving_w < 0.05 * self.cycle.mean_driving_w()
+    }
 }
 
 /// Solves the closure for a head in steady air, from the last cycle found if there is one.
@@ -34,15 +47,17 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
     for _ in 0..8 {
         let centre_k = air_k + start.lag_k;
         let local = Local::around(head, centre_k, start);
-        match close(
-            &local,
-            two_node_k(&local, centre_k, start.mean_difference_k),
-            start.span_k,
-        ) {
-            Some((cycle, body_k)) if (body_k - centre_k).abs() <= 1.3 * start.reach_k() => {
-                return Balance::Cycling { local, cycle, body_k };
+        match close(&local, two_node_k(&local, centre_k, start), start) {
+            Some(closed) if (closed.body_k - centre_k).abs() <= 1.3 * start.reach_k() => {
+                if closed.is_close_to_stall() {
+                    let rest = tip_balance(head, &local.engine);
+                    if rest.driving_w <= 0.0 {
+                        return resting(&local, &rest);
+                    }
+                }
+                return Balance::Cycling { local, closed };
             }
-            Some((cycle, body_k)) => start = next_start(&local, &cycle, body_k, air_k),
+            Some(closed) => start = next_start(&local, &closed, air_k),
             None => {
                 let rest = tip_balance(head, &local.engine);
                 if rest.driving_w <= 0.0 || refused {
@@ -63,22 +78,29 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
 }
 
 /// Where the next search may start after a cycle was found.
-pub(super) fn next_start(local: &Local, cycle: &Cycle, body_k: f64, air_k: f64) -> Start {
+pub(super) fn next_start(local: &Local, closed: &Closed, air_k: f64) -> Start {
+    let Closed {
+        cycle,
+        body_k,
+        slope_share,
+    } = *closed;
     let head_k = cycle.head_k_s / cycle.period_s;
     Start {
         span_k: local.holding_k(local.engine.device.tip_volume_m3, body_k),
         felt_drop_k: head_k - local.surface_k.at(head_k),
         mean_difference_k: body_k - head_k,
+        two_node_rest_w: local.gain_w.at(body_k) - local.heat_w.at(head_k),
+        slope_share,
         lag_k: body_k - air_k,
     }
 }
 
-/// Body temperature at which G(T_b) = q(T_b - difference): two Newton steps on smooth curves.
-fn two_node_k(local: &Local, near_k: f64, difference_k: f64) -> f64 {
+/// Body temperature at which G(T_b) less q(T_b - difference) is what the last cycle left: two Newton steps on smooth curves.
+fn two_node_k(local: &Local, near_k: f64, start: Start) -> f64 {
     let mut body_k = near_k;
     for _ in 0..2 {
-        let head_k = body_k - difference_k;
-        let surplus_w = local.gain_w.at(body_k) - local.heat_w.at(head_k);
+        let head_k = body_k - start.mean_difference_k;
+        let surplus_w = local.gain_w.at(body_k) - local.heat_w.at(head_k) - start.two_node_rest_w;
         body_k -= surplus_w / (local.gain_w.slope(body_k) - local.heat_w.slope(head_k));
     }
     if (body_k - near_k).abs() < 5.0 { body_k } else { near_k }
@@ -108,17 +130,20 @@ fn first_start(head: &HeadSide) -> Start {
         span_k,
         felt_drop_k: head.device.head.felt_resistance_k_w * taken_w(body_k),
         mean_difference_k: 0.7 * span_k,
+        two_node_rest_w: 0.0,
+        slope_share: 1.0,
         lag_k: body_k - air_k,
     }
 }
 
 /// Bracketed secant on the mean power imbalance. Too cold a body starves; above the ceiling the air gives it nothing more.
-fn close(local: &Local, guess_k: f64, span_k: f64) -> Option<(Cycle, f64)> {
-    let conducted_w = local.engine.device.conduction_w_k * span_k;
+fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
+    let conducted_w = local.engine.device.conduction_w_k * start.span_k;
     let ceiling_k = guess_k + (conducted_w - local.gain_w.at(guess_k)) / local.gain_w.slope(guess_k);
     let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k.clamp(guess_k, guess_k + 5.0) + 0.2);
     let mut body_k = guess_k;
     let mut older: Option<(f64, f64)> = None;
+    let mut slope_share = start.slope_share;
     for _ in 0..80 {
         let Ok(cycle) = march(local, body_k) else {
             if low_k == f64::NEG_INFINITY && march(local, high_k).is_err() || high_k - body_k < 1e-9 {
@@ -130,7 +155,11 @@ fn close(local: &Local, guess_k: f64, span_k: f64) -> Option<(Cycle, f64)> {
         };
         let surplus_j = cycle.body_heat_j - cycle.head_heat_j;
         if surplus_j.abs() <= CLOSURE * (cycle.body_heat_j.abs() + cycle.head_heat_j.abs()) {
-            return Some((cycle, body_k));
+            return Some(Closed {
+                cycle,
+                body_k,
+                slope_share,
+            });
         }
         let surplus_w = surplus_j / cycle.period_s;
         if surplus_w > 0.0 {
@@ -138,12 +167,17 @@ fn close(local: &Local, guess_k: f64, span_k: f64) -> Option<(Cycle, f64)> {
         } else {
             high_k = body_k
         }
-        let slope = older
-            .map(|(k, w)| (surplus_w - w) / (body_k - k))
-            .filter(|slope| *slope < 0.0)
-            .unwrap_or_else(|| local.gain_w.slope(body_k) - local.heat_w.slope(body_k));
+        let smooth = local.gain_w.slope(body_k) - local.heat_w.slope(body_k - start.mean_difference_k);
+        if let Some((k, w)) = older {
+            let share = (surplus_w - w) / (body_k - k) / smooth;
+            slope_share = if share > 0.05 && share < 20.0 {
+                share
+            } else {
+                slope_share
+            };
+        }
         older = Some((body_k, surplus_w));
-        let next_k = body_k - surplus_w / slope;
+        let next_k = body_k - surplus_w / (slope_share * smooth);
         let inside = next_k > low_k && next_k < high_k;
         body_k = if inside {
             next_k

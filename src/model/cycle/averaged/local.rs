@@ -75,6 +75,10 @@ pub(in crate::model::cycle) struct Start {
     pub(super) felt_drop_k: f64,
     /// Mean difference between body at the tip and head over a cycle [K].
     pub(super) mean_difference_k: f64,
+    /// What G(T_b) - q(T_b - mean difference) left in the last cycle [W].
+    pub(super) two_node_rest_w: f64,
+    /// Slope of the power imbalance over what the two smooth curves alone would give.
+    pub(super) slope_share: f64,
     /// Body at the tip less air [K].
     pub(super) lag_k: f64,
 }

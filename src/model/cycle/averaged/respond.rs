@@ -5,7 +5,7 @@ use super::super::ledger::wetness;
 use super::super::sides::HeadSide;
 use super::super::stall::{Rest, rest, tip_balance};
 use super::super::types::{Forcing, HourState, State, Tuning};
-use super::closed::{Balance, balance, next_start};
+use super::closed::{Balance, Closed, balance, next_start};
 use super::march::{Cycle, through_the_dip};
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
@@ -86,8 +86,8 @@ pub(super) fn respond(plant: Plant, state: &mut State, forcing: &Forcing) -> Res
 /// Nodes of a settled device right after a dip; at rest where it does not cycle.
 pub(in crate::model::cycle) fn settled_nodes(plant: Plant, state: &State, forcing: &Forcing) -> Nodes {
     let head = head_side(plant, state, forcing);
-    if let Balance::Cycling { local, body_k, .. } = balance(&head, None) {
-        return through_the_dip(&local, body_k, &mut Cycle::default());
+    if let Balance::Cycling { local, closed } = balance(&head, None) {
+        return through_the_dip(&local, closed.body_k, &mut Cycle::default());
     }
     let Rest { head_k, body_k, .. } = rest(&head);
     let engine = Engine::at(plant.device, &state.felt, body_k);
@@ -118,8 +118,9 @@ pub(in crate::model::cycle) fn head_side<'a>(plant: Plant<'a>, state: &State, fo
 
 fn unfrozen(head: &HeadSide, state: &mut State) -> Response {
     match balance(head, state.start) {
-        Balance::Cycling { local, cycle, body_k } => {
-            state.start = Some(next_start(&local, &cycle, body_k, head.forcing.air.temp_k));
+        Balance::Cycling { local, closed } => {
+            state.start = Some(next_start(&local, &closed, head.forcing.air.temp_k));
+            let Closed { cycle, body_k, .. } = closed;
             let head_k = cycle.head_k_s / cycle.period_s;
             let tip_m3 = head.device.tip_volume_m3;
             let ratio = local.engine.head_j_k(tip_m3) / local.engine.body_j_k(tip_m3);
