@@ -94,7 +94,7 @@ fn air_speed(air_speed_m_s: f64) -> Assumption {
     Assumption::new(
         "air speed at the device",
         format!("{air_speed_m_s} m/s"),
-        "cycles and water: half or twice as much moves the period by some 15-25 %",
+        "cycles and water: half or twice as much moves the period by about a fifth in an ordinary room",
     )
 }
 

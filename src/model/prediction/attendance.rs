@@ -5,7 +5,7 @@ use super::machine::Machine;
 use super::record::{HourRecord, Piece};
 use super::request::{Attendance, AttendancePolicy};
 use super::result::{Visit, VisitCause};
-use crate::model::cycle::{DueCause, Forcing, HourForcing};
+use crate::model::cycle::{DueCause, HourForcing};
 
 /// Nobody comes by twice within this time [s], even where a felt dries in minutes.
 pub(super) const SHORTEST_BETWEEN_VISITS_S: f64 = 900.0;
@@ -28,6 +28,7 @@ pub(super) struct Person {
     due: Option<Due>,
     planned_s: Option<f64>,
     last_visit_s: Option<f64>,
+    is_to_look: bool,
     /// Visits made.
     pub(super) visits: Vec<Visit>,
 }
@@ -45,6 +46,7 @@ impl Person {
             due: None,
             planned_s,
             last_visit_s: None,
+            is_to_look: true,
             visits: Vec::new(),
         }
     }
@@ -62,9 +64,9 @@ impl Person {
         let mut at_s = 0.0;
         while at_s < HOUR_S {
             let now_s = base_s + at_s;
-            self.notice(now_s, machine.due());
-            let visited = self.visit_if_time(machine, now_s, &forcing::at(forcing, at_s));
-            self.notice(now_s, machine.due());
+            self.look(now_s, machine);
+            let visited = self.visit_if_time(machine, now_s, forcing, at_s);
+            self.look(now_s, machine);
             let until_s = self.next_visit_s(now_s).map_or(HOUR_S, |s| (s - base_s).min(HOUR_S));
             let stretch = machine.stretch(forcing, at_s, until_s, self.due.is_none());
             let fell_due = self.due.is_none() && stretch.due.is_some();
@@ -83,6 +85,13 @@ impl Person {
         record
     }
 
+    /// A stretch tells only that a visit falls due; at the start and after a visit it may be due already.
+    fn look(&mut self, now_s: f64, machine: &impl Machine) {
+        if std::mem::take(&mut self.is_to_look) {
+            self.notice(now_s, machine.due());
+        }
+    }
+
     /// Takes note that a visit is due, unless that is known.
     fn notice(&mut self, now_s: f64, due: Option<DueCause>) {
         let (Some(cause), None) = (due, self.due) else { return };
@@ -98,9 +107,9 @@ impl Person {
         self.planned_s.filter(|planned| *planned > now_s)
     }
 
-    fn visit_if_time(&mut self, machine: &mut impl Machine, now_s: f64, forcing: &Forcing) -> bool {
+    fn visit_if_time(&mut self, machine: &mut impl Machine, now_s: f64, hour: &HourForcing, at_s: f64) -> bool {
         let is_time = self.planned_s.is_some_and(|planned| planned <= now_s);
-        if !is_time || machine.frozen_air(forcing) {
+        if !is_time || machine.frozen_air(&forcing::at(hour, at_s)) {
             return false;
         }
         let filled = machine.refill();
@@ -113,6 +122,7 @@ impl Person {
         });
         self.due = None;
         self.last_visit_s = Some(now_s);
+        self.is_to_look = true;
         self.calendar_s.retain(|planned| *planned > now_s);
         self.planned_s = self.calendar_s.pop();
         true

@@ -9,6 +9,11 @@ use crate::model::weather::zone::Zone;
 /// Most samples of a band.
 pub const MAX_SAMPLES: usize = 256;
 
+/// An end state must be taken back as it was said.
+const ROUNDING: f64 = 1e-9;
+/// A level counts from a cup filled at 20 °C: an emptied warm cup has fallen by a little more than its depth.
+const EXPANSION: f64 = 0.03;
+
 /// What the check read on its way.
 #[derive(Debug, Clone)]
 pub(super) struct Checked {
@@ -112,19 +117,16 @@ fn check_initial(initial: &InitialState, device: &Device, faults: &mut Vec<Fault
             within(faults, &format!("options/initial_state/{name}"), value, low, high);
         }
     };
-    field(
-        "felt_liquid_g",
-        initial.felt_liquid_g,
-        0.0,
-        1e3 * device.head.felt_capacity_kg,
-    );
+    let felt_g = 1e3 * device.head.felt_capacity_kg * (1.0 + ROUNDING);
+    field("felt_liquid_g", initial.felt_liquid_g, 0.0, felt_g);
     field("body_temp_c", initial.body_temp_c, -60.0, 90.0);
     field("head_temp_c", initial.head_temp_c, -60.0, 90.0);
     // Water stays water: a strength can be given only where the device drinks spirit.
     let strongest = if device.evaporant_abv_pct > 0.0 { 100.0 } else { 0.0 };
     field("felt_strength_abv_pct", initial.felt_strength_abv_pct, 0.0, strongest);
     if let Some(cup) = &device.cup {
-        field("cup_drop_mm", initial.cup_drop_mm, 0.0, 1e3 * cup.fill_depth_m);
+        let empty_mm = 1e3 * cup.fill_depth_m * (1.0 + EXPANSION);
+        field("cup_drop_mm", initial.cup_drop_mm, 0.0, empty_mm);
         field("cup_temp_c", initial.cup_temp_c, -60.0, 90.0);
         field("cup_strength_abv_pct", initial.cup_strength_abv_pct, 0.0, strongest);
         return;

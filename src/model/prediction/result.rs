@@ -3,6 +3,8 @@
 use crate::model::cycle::{DueCause, HourState, Method, TracePoint};
 use crate::model::notes::{Assumption, Caution};
 
+use super::request::InitialState;
+
 /// A prediction in practical units: hours, grams, millimetres, °C.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Prediction {
@@ -269,7 +271,7 @@ pub struct CycleTrace {
     pub points: Vec<TracePoint>,
 }
 
-/// The device at the end of a run, in the units of [`super::InitialState`].
+/// The device at the end of a run, in the units of [`InitialState`].
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct EndState {
     /// Level of the cup below its brim mark [mm]; none without a cup.
@@ -288,4 +290,20 @@ pub struct EndState {
     pub cup_temp_c: f64,
     /// The felt has dried out and waits for a person.
     pub dried_out: bool,
+}
+
+impl From<EndState> for InitialState {
+    /// The start of a run that takes up where another ended; where in a cycle it stood is lost.
+    fn from(end: EndState) -> Self {
+        Self {
+            cup_drop_mm: end.cup_drop_mm,
+            felt_liquid_g: Some(end.felt_liquid_g),
+            cup_strength_abv_pct: end.cup_strength_abv_pct,
+            felt_strength_abv_pct: Some(end.felt_strength_abv_pct),
+            body_temp_c: Some(end.body_temp_c),
+            head_temp_c: Some(end.head_temp_c),
+            cup_temp_c: end.cup_drop_mm.map(|_| end.cup_temp_c),
+            dried_out: Some(end.dried_out),
+        }
+    }
 }

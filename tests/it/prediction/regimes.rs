@@ -118,17 +118,8 @@ fn a_run_can_be_taken_up_where_another_ended() {
     let device = shelf();
     let whole = run(&device, &steady(48, 22.0, 50.0), plain()).unwrap();
     let first = run(&device, &steady(24, 22.0, 50.0), plain()).unwrap();
-    let end = first.end_state;
     let options = Options {
-        initial_state: Some(InitialState {
-            cup_drop_mm: end.cup_drop_mm,
-            felt_liquid_g: Some(end.felt_liquid_g),
-            body_temp_c: Some(end.body_temp_c),
-            head_temp_c: Some(end.head_temp_c),
-            cup_temp_c: Some(end.cup_temp_c),
-            dried_out: Some(end.dried_out),
-            ..InitialState::default()
-        }),
+        initial_state: Some(first.end_state.into()),
         ..plain()
     };
     let second = run(&device, &steady(24, 22.0, 50.0), options).unwrap();
@@ -208,5 +199,34 @@ fn one_cycle_close_up_rises_and_dips() {
             .unwrap()
             .cycle_trace
             .is_none()
+    );
+}
+
+/// What the assumption about air speed says of its effect.
+#[test]
+fn half_or_twice_the_air_speed_moves_the_period_by_about_a_fifth() {
+    let (device, room) = (shelf(), steady(24, 22.0, 50.0));
+    let cycles = |air_speed_m_s| {
+        let request = PredictionRequest {
+            device: &device,
+            series: &room,
+            air_speed_m_s,
+            options: plain(),
+        };
+        predict(&request, &|_, _| true).unwrap()
+    };
+    let given = |speed| cycles(Some(speed)).summary.totals.cycles;
+    let silent = cycles(None);
+    assert_eq!(silent.summary.totals.cycles, given(DEFAULT_AIR_SPEED_M_S));
+    assert!(
+        silent
+            .assumptions
+            .iter()
+            .any(|a| a.what == "air speed at the device" && a.value == "0.1 m/s")
+    );
+    let (slower, faster) = (given(0.1) / given(0.05), given(0.2) / given(0.1));
+    assert!(
+        (1.12..1.28).contains(&slower) && (1.12..1.3).contains(&faster),
+        "{slower} {faster}"
     );
 }
