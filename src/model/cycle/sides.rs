@@ -68,7 +68,7 @@ impl HeadSide<'_> {
         for _ in 0..20 {
             let flow = self.at_surface(surface_k);
             let miss_k = surface_k + resistance * flow.heat_w - node_k;
-            if miss_k.abs() < 1e-10 {
+            if miss_k.abs() < 1e-8 {
                 return (flow, surface_k);
             }
             // One degree of surface moves the miss by little more than a degree; the secant knows better from then on.

@@ -7,8 +7,8 @@ use super::super::types::{HourForcing, State};
 use super::integrate::{Vector, dormand_prince};
 
 /// Error allowed in a step: temperature [K] and share of the tip volume.
-const TEMPERATURE_ERROR_K: f64 = 2e-8;
-const VOLUME_ERROR_SHARE: f64 = 2e-8;
+const TEMPERATURE_ERROR_K: f64 = 3e-7;
+const VOLUME_ERROR_SHARE: f64 = 3e-7;
 
 /// What holds between dips.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -196,7 +196,7 @@ impl Between<'_> {
         let mut at_long = self.watched(&reached) - level;
         let mut side = 0;
         for _ in 0..50 {
-            if at_long.abs() < 1e-11 * scale || long_s - short_s < 1e-9 {
+            if at_long.abs() < 1e-10 * scale || long_s - short_s < 1e-9 {
                 break;
             }
             // Illinois variant of regula falsi: the end that stays twice counts half.
