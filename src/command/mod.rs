@@ -1,7 +1,9 @@
 //! One file per subcommand; each returns what to tell the user when it fails.
 
+mod demo;
 mod healthcheck;
 mod openapi;
+mod predict;
 mod serve;
 
 use std::io::Write;
@@ -20,6 +22,8 @@ pub struct Cli {
 enum Command {
     /// Start the HTTP service.
     Serve(serve::Serve),
+    /// Predict without a server: request and readings from files.
+    Predict(predict::Predict),
     /// Print the API description (OpenAPI 3.1).
     Openapi,
     /// Ask a running service whether it is ready; exit 0 if so.
@@ -30,15 +34,16 @@ enum Command {
 pub fn run(cli: Cli) -> Result<(), String> {
     match cli.command {
         Command::Serve(serve) => serve::run(&serve),
+        Command::Predict(predict) => predict::run(&predict),
         Command::Openapi => openapi::run(),
         Command::Healthcheck(healthcheck) => healthcheck::run(&healthcheck),
     }
 }
 
 /// Writes to standard output; a closed pipe is no failure.
-fn print(text: &str) -> Result<(), String> {
+fn print(text: &[u8]) -> Result<(), String> {
     let mut out = std::io::stdout().lock();
-    match out.write_all(text.as_bytes()).and_then(|()| out.flush()) {
+    match out.write_all(text).and_then(|()| out.flush()) {
         Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => Err(format!("standard output: {error}")),
         _ => Ok(()),
     }

@@ -3,5 +3,5 @@
 use dipcast::http::{openapi, router};
 
 pub(super) fn run() -> Result<(), String> {
-    super::print(&openapi::text(&router::document()))
+    super::print(openapi::text(&router::document()).as_bytes())
 }

@@ -1,5 +1,6 @@
 //! `dipcast serve`
 
+use std::net::{IpAddr, Ipv4Addr, Ipv6Addr, SocketAddr};
 use std::path::PathBuf;
 use std::time::Duration;
 
@@ -8,6 +9,8 @@ use dipcast::config::{Config, Overrides};
 use dipcast::http::{router, server};
 use dipcast::telemetry;
 use tokio::net::TcpListener;
+
+use super::demo;
 
 #[derive(Args)]
 pub(super) struct Serve {
@@ -20,6 +23,9 @@ pub(super) struct Serve {
     /// Serve everyone who can reach the port, without keys.
     #[arg(long)]
     allow_anonymous: bool,
+    /// Run a demo prediction through the service's own API, show it, and keep serving.
+    #[arg(long)]
+    demo: bool,
 }
 
 pub(super) fn run(arguments: &Serve) -> Result<(), String> {
@@ -29,26 +35,53 @@ pub(super) fn run(arguments: &Serve) -> Result<(), String> {
         allow_anonymous: arguments.allow_anonymous,
     };
     let config = Config::load(&overrides).map_err(|error| error.to_string())?;
+    if arguments.demo && !config.access.key_sha256.is_empty() {
+        return Err("--demo sends no key; start it without access.key_sha256".to_owned());
+    }
     telemetry::start_logs(&config.log)?;
     let runtime = tokio::runtime::Runtime::new().map_err(|error| format!("the runtime could not start: {error}"))?;
-    let served = runtime.block_on(serve(config));
+    let served = runtime.block_on(serve(config, arguments.demo));
     // Runs that were cancelled leave by themselves; none may hold the process.
     runtime.shutdown_timeout(Duration::from_secs(1));
     served
 }
 
-async fn serve(config: Config) -> Result<(), String> {
+async fn serve(config: Config, demo: bool) -> Result<(), String> {
     let bind = config.server.bind;
     let listener = TcpListener::bind(bind)
         .await
         .map_err(|error| format!("cannot listen on {bind}: {error}"))?;
-    let address = listener.local_addr().map_err(|error| error.to_string())?;
+    let address = reachable(listener.local_addr().map_err(|error| error.to_string())?);
     warn_if_open(&config);
     let (router, app) = router::build(config);
     tracing::info!("listening on http://{address}; the description is at http://{address}/docs/");
+    let shown = tokio::spawn(async move {
+        if demo {
+            show(address).await
+        }
+    });
     server::serve(listener, router, app, server::stop_signal()).await;
+    shown.abort();
     tracing::info!("stopped");
     Ok(())
+}
+
+/// The demo's failure is told; the service goes on.
+async fn show(address: SocketAddr) {
+    let printed = demo::run(address).await.and_then(|text| super::print(text.as_bytes()));
+    if let Err(error) = printed {
+        tracing::error!(error, "the demo failed");
+    }
+}
+
+/// An address this machine can call: the unspecified one stands for loopback.
+fn reachable(address: SocketAddr) -> SocketAddr {
+    let ip = match address.ip() {
+        IpAddr::V4(ip) if ip.is_unspecified() => IpAddr::V4(Ipv4Addr::LOCALHOST),
+        IpAddr::V6(ip) if ip.is_unspecified() => IpAddr::V6(Ipv6Addr::LOCALHOST),
+        ip => ip,
+    };
+    SocketAddr::new(ip, address.port())
 }
 
 /// Said loudly: whoever can reach the port can use it.

@@ -3,6 +3,8 @@
 //! Handlers return a [`Problem`]; it travels as a response extension until [`finish`], the outermost layer, writes it
 //! with the request's id. Answers of the framework itself that are errors without a problem get one there too.
 
+use std::fmt;
+
 use axum::body::Body;
 use axum::http::{HeaderValue, StatusCode, header};
 use axum::response::{IntoResponse, Response};
@@ -171,6 +173,42 @@ impl Problem {
             errors: self.errors.clone(),
             available: self.available.clone(),
         }
+    }
+}
+
+impl fmt::Display for Problem {
+    fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(
+            out,
+            "{} ({}): {}",
+            self.code.kind().title,
+            self.code.kind().code,
+            self.detail
+        )?;
+        for fault in &self.errors {
+            write!(out, "\n  {fault}")?;
+        }
+        Ok(())
+    }
+}
+
+impl fmt::Display for FaultItem {
+    fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
+        if let Some(place) = self
+            .pointer
+            .as_ref()
+            .or(self.parameter.as_ref())
+            .filter(|place| !place.is_empty())
+        {
+            write!(out, "{place}: ")?;
+        }
+        if let Some(row) = self.row {
+            write!(out, "row {row}: ")?;
+        }
+        if let Some(column) = &self.column {
+            write!(out, "{column}: ")?;
+        }
+        write!(out, "{} ({})", self.detail, self.code)
     }
 }
 

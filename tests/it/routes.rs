@@ -1,5 +1,7 @@
 //! One file a resource, shaped like the URLs.
 
 mod access;
+mod predictions;
 mod problems;
 mod service;
+mod tables;

@@ -135,3 +135,68 @@ impl Running {
         format!("http://{}{path}", self.address)
     }
 }
+
+/// A file of `openapi/examples/`.
+pub fn example(name: &str) -> String {
+    let path = format!("{}/openapi/examples/{name}", env!("CARGO_MANIFEST_DIR"));
+    std::fs::read_to_string(&path).unwrap_or_else(|error| panic!("{path}: {error}"))
+}
+
+/// A good request to spoil: the shelf device and some hours of an ordinary room.
+pub fn request(hours: usize) -> Value {
+    let temperature: Vec<f64> = (0..hours).map(|hour| 21.0 + (hour % 24) as f64 * 0.1).collect();
+    let humidity: Vec<f64> = (0..hours).map(|hour| 45.0 + (hour % 24) as f64 * 0.3).collect();
+    serde_json::json!({
+        "device_example": "shelf-180",
+        "weather": {"kind": "inline", "start": "2026-01-01T00:00:00Z",
+                    "air_temperature_c": temperature, "relative_humidity_pct": humidity},
+        "options": {"bands": false}
+    })
+}
+
+pub async fn predict(router: &Router, request: &Value) -> Answer {
+    post_json(router, "/v1/predictions", request.to_string()).await
+}
+
+/// A form of named parts.
+pub fn form(parts: &[(&str, &[u8])]) -> (String, Vec<u8>) {
+    let boundary = "dipcast-test-boundary";
+    let mut body = Vec::new();
+    for (name, content) in parts {
+        let head = format!("--{boundary}\r\nContent-Disposition: form-data; name=\"{name}\"; filename=\"x\"\r\n\r\n");
+        body.extend_from_slice(head.as_bytes());
+        body.extend_from_slice(content);
+        body.extend_from_slice(b"\r\n");
+    }
+    body.extend_from_slice(format!("--{boundary}--\r\n").as_bytes());
+    (format!("multipart/form-data; boundary={boundary}"), body)
+}
+
+pub async fn post_form(router: &Router, path: &str, parts: &[(&str, &[u8])]) -> Answer {
+    let (content_type, body) = form(parts);
+    let request = Request::post(path)
+        .header(header::CONTENT_TYPE, content_type)
+        .body(Body::from(body));
+    ask(router, request.unwrap()).await
+}
+
+/// A request for a file, with a layout or without.
+pub fn upload(layout: Value) -> Value {
+    let mut upload = serde_json::json!({"device_example": "shelf-180", "weather": {"kind": "upload"},
+                                        "options": {"bands": false, "include": ["hours"]}});
+    if !layout.is_null() {
+        upload["weather"]["layout"] = layout;
+    }
+    upload
+}
+
+/// Sends a file in the documented form.
+pub async fn predict_file(router: &Router, file: &[u8]) -> Answer {
+    let request = upload(Value::Null).to_string();
+    post_form(
+        router,
+        "/v1/predictions",
+        &[("request", request.as_bytes()), ("weather", file)],
+    )
+    .await
+}

@@ -16,20 +16,24 @@ pub use hours::{CycleTrace, HourColumns, HourRow, StateFractions, TracePoint};
 pub use periods::{Band, HourOfDay, Period, PeriodBands, StallHours, StallHoursBands, Substance, SubstanceBands};
 pub use request::{Place, PlaceAtDevice, PredictionRequest, SCHEMA_NAME};
 pub use spells::{HealedBy, HourState, StallSpell, StallSpellsSummary, Visit, VisitCause};
-pub use table::csv_lines;
+pub use table::{csv_lines, json_lines, pieces};
+
+use std::convert::Infallible;
 
 use axum::Json;
 use axum::body::Body;
 use axum::extract::{Request, State};
-use axum::http::{HeaderMap, header};
+use axum::http::header;
 use axum::response::{IntoResponse, Response};
 use bytes::Bytes;
+use futures::stream;
 
 use crate::http::app::App;
 use crate::http::error::{Problem, ProblemCode};
 use crate::http::extract::{content_type, parse_json, read_body};
 use crate::http::negotiate::{self, Format, FormatQuery};
-use crate::service::PredictionReport;
+use crate::http::schema::Schemas;
+use crate::service::{PredictionOrder, PredictionReport};
 
 /// What a prediction exists as; the first is the default.
 const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
@@ -53,10 +57,9 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 )]
 pub async fn create_prediction(State(app): State<App>, request: Request) -> Result<Response, Problem> {
     let format = negotiate::choose(request.headers(), request.uri().query(), &FORMATS)?;
-    let (wanted, file) = read(&app, request).await?;
+    let (text, file) = read(&app, request).await?;
     let upload = file.is_some();
-    let mut order = wanted.order(file)?;
-    order.options.keep_hours |= format != Format::Json;
+    let order = order(app.schemas(), &text, file, format)?;
     let report = app
         .predictions()
         .run(order)
@@ -65,18 +68,16 @@ pub async fn create_prediction(State(app): State<App>, request: Request) -> Resu
     Ok(respond(report, format, upload))
 }
 
-async fn read(app: &App, request: Request) -> Result<(PredictionRequest, Option<Bytes>), Problem> {
+/// The text of the request and the file beside it, if there is one.
+async fn read(app: &App, request: Request) -> Result<(Bytes, Option<Bytes>), Problem> {
     let kind = content_type(request.headers())?;
     let limit = app.config().limits.body_bytes;
     match (kind.type_().as_str(), kind.subtype().as_str()) {
         ("application", "json") => {
             let (parts, body) = request.into_parts();
-            Ok((read_alone(app, &parts.headers, body, limit).await?, None))
+            Ok((read_body(&parts.headers, body, limit).await?, None))
         }
-        ("multipart", "form-data") => {
-            let (text, file) = form::read(request, limit).await?;
-            Ok((parse_json(app.schemas(), SCHEMA_NAME, &text)?, file))
-        }
+        ("multipart", "form-data") => form::read(request, limit).await,
         _ => {
             let detail =
                 format!("found {kind}; send application/json, or multipart/form-data with `request` and `weather`");
@@ -85,18 +86,36 @@ async fn read(app: &App, request: Request) -> Result<(PredictionRequest, Option<
     }
 }
 
-async fn read_alone(app: &App, headers: &HeaderMap, body: Body, limit: usize) -> Result<PredictionRequest, Problem> {
-    let text = read_body(headers, body, limit).await?;
-    parse_json(app.schemas(), SCHEMA_NAME, &text)
+/// Reads a request, strictly, into an order of the service.
+///
+/// # Errors
+/// 400 if it is not JSON; 422 with every fault.
+pub fn order(schemas: &Schemas, text: &[u8], file: Option<Bytes>, format: Format) -> Result<PredictionOrder, Problem> {
+    let wanted: PredictionRequest = parse_json(schemas, SCHEMA_NAME, text)?;
+    let mut order = wanted.order(file)?;
+    order.options.keep_hours |= format != Format::Json;
+    Ok(order)
 }
 
 fn respond(report: PredictionReport, format: Format, upload: bool) -> Response {
     let content_type = [(header::CONTENT_TYPE, format.media_type())];
     match format {
         Format::Json => Json(PredictionAnswer::of(report, upload)).into_response(),
-        Format::Csv => (content_type, table::stream(report, table::csv_lines)).into_response(),
-        Format::NdJson => (content_type, table::stream(report, table::json_lines)).into_response(),
+        Format::Csv => (
+            content_type,
+            Body::from_stream(stream::iter(pieces(report, csv_lines).map(infallible))),
+        )
+            .into_response(),
+        Format::NdJson => (
+            content_type,
+            Body::from_stream(stream::iter(pieces(report, json_lines).map(infallible))),
+        )
+            .into_response(),
     }
+}
+
+fn infallible(piece: Vec<u8>) -> Result<Bytes, Infallible> {
+    Ok(Bytes::from(piece))
 }
 
 /// Six decimals: finer than anything the model knows, and half the bytes.

@@ -2,10 +2,6 @@
 
 use std::ops::Range;
 
-use axum::body::Body;
-use bytes::Bytes;
-use futures::stream;
-
 use super::HourRow;
 use crate::service::PredictionReport;
 use crate::service::records::HourColumns;
@@ -13,17 +9,16 @@ use crate::service::records::HourColumns;
 /// Hours written at a time.
 const HOURS_A_PIECE: usize = 500;
 
-/// A body that writes its pieces when the connection takes them; a client that goes away costs no more.
-pub(super) fn stream(report: PredictionReport, write: fn(&HourColumns, Range<usize>) -> Vec<u8>) -> Body {
+/// The hours piece by piece, each written when it is asked for: a reader that goes away costs no more.
+pub fn pieces(report: PredictionReport, write: Writer) -> impl Iterator<Item = Vec<u8>> {
     let hours = report.prediction.hours.unwrap_or_default();
     let count = hours.time_unix_s.len();
     let starts = (0..count.max(1)).step_by(HOURS_A_PIECE);
-    let pieces = starts.map(move |start| {
-        let piece = write(&hours, start..(start + HOURS_A_PIECE).min(count));
-        Ok::<_, std::convert::Infallible>(Bytes::from(piece))
-    });
-    Body::from_stream(stream::iter(pieces))
+    starts.map(move |start| write(&hours, start..(start + HOURS_A_PIECE).min(count)))
 }
+
+/// Writes some of the hours.
+pub type Writer = fn(&HourColumns, Range<usize>) -> Vec<u8>;
 
 /// Hours as CSV lines; the first piece has the header.
 pub fn csv_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
@@ -42,7 +37,7 @@ pub fn csv_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
 }
 
 /// Hours as one JSON object a line.
-pub(super) fn json_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
+pub fn json_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
     let mut text = Vec::new();
     for at in range {
         serde_json::to_writer(&mut text, &HourRow::of(hours, at))
