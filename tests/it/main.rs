@@ -8,6 +8,9 @@
 
 mod device;
 mod bad_csv;
+mod bad_input;
+mod command;
+mod demo_files;
 mod house_rules;
 mod intake_csv;
 mod weather;

@@ -44,3 +44,23 @@ async fn a_wrong_method_names_the_right_ones() {
 async fn a_path_that_is_not_text_is_a_problem() {
     assert_eq!(get(&service(), "/problems/%ff").await.code(), "bad_request");
 }
+
+#[tokio::test]
+async fn a_panic_is_an_answer_that_says_nothing() {
+    use axum::routing;
+    let (_, app) = dipcast::http::router::build(crate::support::config());
+    async fn broken() -> &'static str {
+        panic!("the words of the panic, src/secret.rs")
+    }
+    let router = dipcast::http::middleware::wrap(axum::Router::new().route("/broken", routing::get(broken)), &app);
+    let answer = get(&router, "/broken").await;
+    assert_eq!(
+        (answer.status.as_u16(), answer.code().as_str()),
+        (500, "internal_error")
+    );
+    assert!(
+        !answer.text().contains("words") && !answer.text().contains("src/"),
+        "{}",
+        answer.text()
+    );
+}

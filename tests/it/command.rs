@@ -1,0 +1,104 @@
+//! The command line against the real program.
+
+use std::process::{Command, Output};
+
+use crate::support::example;
+
+fn dipcast(arguments: &[&str]) -> Output {
+    let mut command = Command::new(env!("CARGO_BIN_EXE_dipcast"));
+    command
+        .current_dir(env!("CARGO_MANIFEST_DIR"))
+        .args(arguments)
+        .output()
+        .unwrap()
+}
+
+fn text(bytes: &[u8]) -> String {
+    String::from_utf8_lossy(bytes).into_owned()
+}
+
+/// A file with this text that lives as long as the value.
+fn file(content: &str) -> tempfile::NamedTempFile {
+    let file = tempfile::NamedTempFile::new().unwrap();
+    std::fs::write(file.path(), content).unwrap();
+    file
+}
+
+#[test]
+fn predict_prints_the_same_answer_as_the_service() {
+    let asked = crate::support::request(24).to_string();
+    let request = file(&asked);
+    let printed = dipcast(&[
+        "predict",
+        "--request",
+        request.path().to_str().unwrap(),
+        "--format",
+        "json",
+    ]);
+    assert!(printed.status.success(), "{}", text(&printed.stderr));
+    let runtime = tokio::runtime::Runtime::new().unwrap();
+    let served = runtime.block_on(crate::support::post_json(
+        &crate::support::service(),
+        "/v1/predictions",
+        asked,
+    ));
+    assert_eq!(text(&printed.stdout).trim_end(), served.text());
+}
+
+#[test]
+fn predict_reads_a_file_of_weather_and_prints_a_table() {
+    let weather: String = example("demo-weather.csv")
+        .lines()
+        .take(25)
+        .map(|line| format!("{line}\n"))
+        .collect();
+    let (request, weather) = (
+        file(&crate::support::upload(serde_json::Value::Null).to_string()),
+        file(&weather),
+    );
+    let paths = (request.path().to_str().unwrap(), weather.path().to_str().unwrap());
+    let printed = dipcast(&["predict", "--request", paths.0, "--weather", paths.1, "--format", "csv"]);
+    assert!(printed.status.success(), "{}", text(&printed.stderr));
+    assert_eq!(text(&printed.stdout).matches("\r\n").count(), 25);
+}
+
+#[test]
+fn predict_tells_every_fault_and_fails() {
+    let request = file("{\"device_exampel\": \"shelf-180\", \"weather\": {\"kind\": \"inline\"}}");
+    let printed = dipcast(&["predict", "--request", request.path().to_str().unwrap()]);
+    assert!(!printed.status.success() && printed.stdout.is_empty());
+    let told = text(&printed.stderr);
+    assert!(
+        told.contains("did you mean \"device_example\"?") && told.contains("\"start\" is missing"),
+        "{told}"
+    );
+}
+
+#[test]
+fn openapi_prints_the_committed_description() {
+    let printed = dipcast(&["openapi"]);
+    let committed = std::fs::read_to_string(concat!(env!("CARGO_MANIFEST_DIR"), "/openapi/v1.json")).unwrap();
+    assert_eq!(text(&printed.stdout), committed);
+}
+
+#[test]
+fn serve_refuses_an_open_port_without_keys() {
+    let printed = dipcast(&["serve", "--bind", "0.0.0.0:0"]);
+    assert!(!printed.status.success());
+    assert!(
+        text(&printed.stderr).contains("--allow-anonymous"),
+        "{}",
+        text(&printed.stderr)
+    );
+}
+
+#[test]
+fn healthcheck_fails_where_nobody_listens() {
+    let printed = dipcast(&["healthcheck", "--url", "http://127.0.0.1:9"]);
+    assert!(!printed.status.success());
+    assert!(
+        text(&printed.stderr).contains("is not ready"),
+        "{}",
+        text(&printed.stderr)
+    );
+}
