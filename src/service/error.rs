@@ -88,7 +88,7 @@ pub enum WeatherTrouble {
 /// Sorts a weather fault by its code.
 pub fn trouble(fault: &WeatherFault) -> WeatherTrouble {
     match fault.code {
-        "empty_file" | "not_text" | "binary_file" | "damaged_gzip" | "wrong_encoding" | "open_quote" | "line_ends" => {
+        "empty_file" | "no_readings" | "not_csv" | "damaged_gzip" | "wrong_encoding" | "open_quote" | "line_ends" => {
             WeatherTrouble::Unreadable
         }
         "too_large" | "compression_bomb" | "too_many_rows" | "row_too_long" | "too_many_cells" => {

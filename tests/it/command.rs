@@ -78,7 +78,10 @@ fn predict_tells_every_fault_and_fails() {
 fn openapi_prints_the_committed_description() {
     let printed = dipcast(&["openapi"]);
     let committed = std::fs::read_to_string(concat!(env!("CARGO_MANIFEST_DIR"), "/openapi/v1.json")).unwrap();
-    assert_eq!(text(&printed.stdout), committed);
+    assert!(
+        text(&printed.stdout) == committed,
+        "openapi/v1.json is not what is printed"
+    );
 }
 
 #[test]

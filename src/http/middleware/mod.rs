@@ -11,6 +11,7 @@ pub mod rate_limit;
 pub mod rescue;
 
 use axum::Router;
+use axum::extract::DefaultBodyLimit;
 use axum::http::{HeaderName, HeaderValue, Method, header};
 use axum::middleware::{from_fn, from_fn_with_state};
 use tower_http::catch_panic::CatchPanicLayer;
@@ -22,6 +23,7 @@ use super::app::App;
 /// Wraps the routes in everything of this room. The last layer added is the outermost.
 pub fn wrap(routes: Router, app: &App) -> Router {
     let wrapped = routes
+        .layer(DefaultBodyLimit::max(app.config().limits.body_bytes))
         .layer(from_fn_with_state(app.clone(), rescue::time_out))
         .layer(CatchPanicLayer::custom(rescue::from_panic))
         .layer(from_fn_with_state(app.clone(), rate_limit::limit))

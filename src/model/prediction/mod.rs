@@ -47,7 +47,7 @@ const MODEL_REVISION: u32 = 1;
 
 /// Runs the hours of a request, with bands if asked for.
 ///
-/// `progress` is told the hour-samples done and to do, about every 200 hours and after each sample, from any thread;
+/// `progress` is told the hour-samples done and to do, about every 200 hours (each hour by the resolved method) and after each sample, from any thread;
 /// when it returns false the run stops with [`PredictionError::Cancelled`].
 /// The answer is the same for any number of threads.
 ///

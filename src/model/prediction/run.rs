@@ -10,11 +10,16 @@ use super::machine::RunningDevice;
 use super::record::{HourRecord, Piece};
 use super::request::{Options, PredictionError};
 use super::samples::Sample;
-use crate::model::cycle::{State, Tuning};
+use crate::model::cycle::{Method, State, Tuning};
 use crate::model::device::Device;
 
-/// Hours between two reports of progress.
-const REPORT_HOURS: usize = 200;
+/// Hours between two reports of progress: some ten milliseconds either way, so that a run stops soon after it is left.
+fn report_hours(method: Method) -> usize {
+    match method {
+        Method::Averaged => 200,
+        Method::Resolved => 1,
+    }
+}
 
 /// What all runs of a prediction share.
 pub(super) struct Common<'a> {
@@ -111,15 +116,15 @@ impl<'a> Common<'a> {
         pieces: &mut Vec<Piece>,
         keep: &mut dyn FnMut(usize, &HourRecord, &mut Vec<Piece>),
     ) -> Result<(), PredictionError> {
-        let hours = self.surroundings.hours();
+        let (hours, report_hours) = (self.surroundings.hours(), report_hours(self.options.method));
         for hour in 0..hours {
             let record = person.run_hour(machine, hour, &self.surroundings.hour(hour, air), pieces);
             keep(hour, &record, pieces);
-            if (hour + 1) % REPORT_HOURS == 0 {
-                self.progress.add(REPORT_HOURS)?;
+            if (hour + 1) % report_hours == 0 {
+                self.progress.add(report_hours)?;
             }
         }
-        self.progress.add(hours % REPORT_HOURS)
+        self.progress.add(hours % report_hours)
     }
 
     fn machine<'d>(&self, device: &'d Device, tuning: Tuning, air: AirShift) -> RunningDevice<'d> {

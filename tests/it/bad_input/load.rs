@@ -146,19 +146,27 @@ async fn a_run_that_takes_too_long_is_stopped_and_says_when_to_come_back() {
 }
 
 #[tokio::test(flavor = "multi_thread", worker_threads = 2)]
-async fn a_run_in_progress_is_finished_when_the_service_stops() {
+async fn a_request_in_progress_is_answered_when_the_service_stops() {
     let mut running = Running::start(config()).await;
-    let mut stream = send(&running, &request(5_000).to_string()).await;
-    let mut first = [0; 12];
-    let (read, ()) = tokio::join!(stream.read_exact(&mut first), async { running.stop() });
-    read.unwrap();
+    let mut stream = TcpStream::connect(running.address).await.unwrap();
+    let body = request(5_000).to_string();
+    let head = format!(
+        "POST /v1/predictions?format=ndjson HTTP/1.1\r\nHost: x\r\nContent-Type: application/json\r\nExpect: 100-continue\r\nContent-Length: {}\r\n\r\n",
+        body.len()
+    );
+    stream.write_all(head.as_bytes()).await.unwrap();
+    let mut go_on = vec![0; "HTTP/1.1 100 Continue\r\n\r\n".len()];
+    stream.read_exact(&mut go_on).await.unwrap();
+    assert!(
+        go_on.starts_with(b"HTTP/1.1 100"),
+        "the service has the request and waits for its body"
+    );
+    running.stop();
+    stream.write_all(body.as_bytes()).await.unwrap();
     let mut rest = Vec::new();
     stream.read_to_end(&mut rest).await.unwrap();
     let text = String::from_utf8_lossy(&rest);
-    assert!(
-        text.contains("2026-07-28T07:00:00Z"),
-        "the last hour was sent: {}",
-        &text[text.len().saturating_sub(300)..]
-    );
+    let end = &text[text.len().saturating_sub(600)..];
+    assert!(end.contains("2026-07-28T07:00:00Z"), "the last hour was sent: {end}");
     (&mut running.served).await.unwrap();
 }

@@ -9,7 +9,10 @@ fn spoiled(changes: &[(&str, Value)]) -> Value {
     let mut asked: Value = serde_json::from_str(&example("own-device.json")).unwrap();
     for (pointer, value) in changes {
         let (parent, name) = pointer.rsplit_once('/').unwrap();
-        asked.pointer_mut(parent).unwrap()[name] = value.clone();
+        match asked.pointer_mut(parent).unwrap() {
+            Value::Array(items) => items[name.parse::<usize>().unwrap()] = value.clone(),
+            object => object[name] = value.clone(),
+        }
     }
     asked
 }

@@ -190,6 +190,16 @@ async fn days_with_a_clock_change_have_23_and_25_hours() {
 }
 
 #[tokio::test]
+async fn a_file_of_some_megabytes_is_no_trouble() {
+    let mut text = file(|_, line| line);
+    // Blank lines are nothing: the file grows without its readings.
+    text.resize(3 << 20, b'\n');
+    let answer = predict_file(&service(), &text).await;
+    assert_eq!(answer.status, 200, "{}", answer.text());
+    assert_eq!(answer.json()["weather"]["readings"], 24);
+}
+
+#[tokio::test]
 async fn files_that_cannot_be_read_are_told_so() {
     let router = service();
     refused(&predict_file(&router, b"").await, 400, "unreadable_weather");

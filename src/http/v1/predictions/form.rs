@@ -1,11 +1,9 @@
 //! `multipart/form-data` with the parts `request` and `weather`, in any order.
 
-use axum::body::Body;
 use axum::extract::multipart::{Field, MultipartError};
 use axum::extract::{FromRequest, Multipart, Request};
 use axum::http::StatusCode;
 use bytes::Bytes;
-use http_body_util::Limited;
 use utoipa::ToSchema;
 
 use super::PredictionRequest;
@@ -24,10 +22,9 @@ pub struct PredictionForm {
     weather: Option<Vec<u8>>,
 }
 
-/// The text of `request` and, if there is one, the file of `weather`.
+/// The text of `request` and, if there is one, the file of `weather`. The limit on what is read is the router's.
 pub(super) async fn read(request: Request, limit: usize) -> Result<(Bytes, Option<Bytes>), Problem> {
     check_stated_length(request.headers(), limit)?;
-    let request = request.map(|body| Body::new(Limited::new(body, limit)));
     let unreadable = |_| Problem::new(ProblemCode::InvalidMultipart, "the Content-Type names no boundary");
     let mut form = Multipart::from_request(request, &()).await.map_err(unreadable)?;
     let mut parts = Parts::default();
