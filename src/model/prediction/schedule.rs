@@ -367,4 +367,42 @@ mod tests {
         let asked = [(0, 5), (5, 15), (15, 35), (35, 100), (100, 200)];
         assert_eq!(asked.map(|(from, to)| overlaps.seconds(from, to)), [0, 5, 10, 5, 0]);
     }
+
+    /// Minute by minute: open where an interval of today or one of yesterday that runs past midnight holds the clock.
+    fn naive_open_minutes(week: &[Vec<(i64, i64)>; 7], days: i64) -> i64 {
+        let holds = |day: i64, minute: i64| {
+            week[weekday(day)]
+                .iter()
+                .any(|(from, to)| (*from..*to).contains(&minute))
+        };
+        let open = |minute: i64| {
+            let (day, minute) = (minute.div_euclid(1440), minute.rem_euclid(1440));
+            holds(day, minute) || holds(day - 1, minute + 1440)
+        };
+        (0..days * 1440).filter(|minute| open(*minute)).count() as i64
+    }
+
+    fn clock(minute: i64) -> String {
+        format!("{:02}:{:02}", minute % 1440 / 60, minute % 60)
+    }
+
+    proptest::proptest! {
+        #[test]
+        fn spans_agree_with_a_walk_minute_by_minute(
+            starts in proptest::collection::vec((0..7_usize, 0..1440_i64, 1..1440_i64), 0..6),
+        ) {
+            let (mut schedule, mut week) = (ClockSchedule::default(), [const { Vec::new() }; 7]);
+            for (weekday, from, length) in starts {
+                if week[weekday].iter().any(|(f, t)| from < *t && *f < from + length) {
+                    continue;
+                }
+                week[weekday].push((from, from + length));
+                schedule.weekly[weekday].push(interval(&clock(from), &clock(from + length)));
+            }
+            let range = Span { from_unix_s: 0, to_unix_s: 21 * DAY_S };
+            let all = spans(&read(&schedule).unwrap(), &Zone::utc(), range);
+            let open_s: i64 = all.iter().map(|span| span.to_unix_s - span.from_unix_s).sum();
+            proptest::prop_assert_eq!(open_s, 60 * naive_open_minutes(&week, 21));
+        }
+    }
 }
