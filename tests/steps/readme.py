@@ -1,9 +1,10 @@
 """Runs every block of README.md that is marked ```sh run, and compares what it prints with the block that follows.
 
-In the expected block `...` stands for anything. The address in the README is replaced by that of the server under
+In the expected block `...` stands for anything, and numbers may differ a little: they are there to be read. The address in the README is replaced by that of the server under
 test; `dipcast` is the release build. A block with no expected block after it must only succeed.
 """
 
+import math
 import os
 import pathlib
 import re
@@ -11,14 +12,33 @@ import subprocess
 import sys
 import tempfile
 
+TOLERANCE = 0.03
+NUMBER = re.compile(r"(?<![\w.])\d+\.?\d*(?![\w.])")
 ADDRESS = "127.0.0.1:8080"
 BLOCK = re.compile(r"^```(.*?)\n(.*?)^```\n(?:\s*^```(?:text|json|csv)\n(.*?)^```\n)?", re.MULTILINE | re.DOTALL)
 
 
-def pattern(expected):
-    """The expected text as a pattern: spaces weigh nothing, `...` matches anything."""
-    pieces = [r"\s*".join(re.escape(word) for word in piece.split()) for piece in expected.split("...")]
-    return re.compile(r".*?".join(r"\s*" + piece + r"\s*" for piece in pieces) + r"\Z", re.DOTALL)
+def agrees(expected, printed):
+    """Word by word; `...` alone stands for any words, inside a word for any letters."""
+    want, got = expected.split(), printed.split()
+    return matches(want, got)
+
+
+def matches(want, got):
+    if not want:
+        return not got
+    if want[0] == "...":
+        return any(matches(want[1:], got[skip:]) for skip in range(len(got) + 1))
+    return bool(got) and same_word(want[0], got[0]) and matches(want[1:], got[1:])
+
+
+def same_word(want, got):
+    """Alike but for numbers, which may differ by TOLERANCE: they are there to be read, other tests hold them."""
+    pieces = [NUMBER.sub("0", piece) for piece in (want, got)]
+    if "..." in want:
+        return re.fullmatch(".*".join(map(re.escape, want.split("..."))), got) is not None
+    numbers = zip(map(float, NUMBER.findall(want)), map(float, NUMBER.findall(got)))
+    return pieces[0] == pieces[1] and all(math.isclose(a, b, rel_tol=TOLERANCE, abs_tol=1e-9) for a, b in numbers)
 
 
 def run(block, folder, environment):
@@ -40,7 +60,7 @@ def main(readme, base, binary):
             ran += 1
             done = run(block.replace(ADDRESS, here), folder, environment)
             printed = done.stdout.replace(here, ADDRESS)
-            wrong = done.returncode != 0 or (expected and not pattern(expected).match(printed))
+            wrong = done.returncode != 0 or (expected and not agrees(expected, printed))
             if wrong:
                 failed += 1
                 print(f"--- README block, exit code {done.returncode}:\n{block}--- printed:\n{printed[:3000]}\n--- expected:\n{expected}")
