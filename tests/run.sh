@@ -54,7 +54,7 @@ everything() {
     step "image" image_lint
     step "server starts" start_server
     step "OpenAPI 3.1" openapi_document
-    step "requests made up from the document" fuzz_the_document --max-examples 40
+    step "requests made up from the document" fuzz_the_document --max-examples 150
     step "examples of the README" python3 tests/steps/readme.py README.md "$base" "$binary"
     step "server stops" stop_server
 }
@@ -64,7 +64,7 @@ long() {
     step "release build" release_build
     step "property tests, 20,000 cases each" env PROPTEST_CASES=20000 cargo nextest run --release --locked --profile long
     step "server starts" start_server
-    step "requests made up from the document, at length" fuzz_the_document --max-examples 400 --max-time 1200
+    step "requests made up from the document, at length" fuzz_the_document --max-examples 1500 --max-time 1200
     step "memory over 10,000 predictions" python3 tests/steps/endurance.py memory "$base" "$server_pid"
     step "SIGTERM under load" python3 tests/steps/endurance.py drain "$base" "$server_pid"
     step "server stops" stop_server
