@@ -127,6 +127,10 @@ pub struct DeviceState {
     /// The felt has dried out and waits for a person.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub dried_out: Option<bool>,
+    /// Scale on the felt [mg]; a new felt has none.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(minimum = 0, maximum = 1_000_000)]
+    pub scale_mg: Option<f64>,
 }
 
 /// What the samples vary: 5th and 95th percentile of each uncertain input.
@@ -232,6 +236,7 @@ impl From<DeviceState> for records::InitialState {
             head_temp_c: wire.head_temp_c,
             cup_temp_c: wire.cup_temp_c,
             dried_out: wire.dried_out,
+            scale_mg: wire.scale_mg,
         }
     }
 }
@@ -247,6 +252,7 @@ impl From<records::EndState> for DeviceState {
             head_temp_c: Some(record.head_temp_c),
             cup_temp_c: record.cup_drop_mm.map(|_| record.cup_temp_c),
             dried_out: Some(record.dried_out),
+            scale_mg: Some(record.scale_mg),
         }
     }
 }

@@ -34,6 +34,7 @@ impl State {
             cup,
             cup_temp_k: forcing.air.temp_k,
             dried_out: false,
+            scale_kg: 0.0,
             iced: false,
             ahead_s: 0.0,
             start: None,

@@ -25,6 +25,8 @@ pub(super) struct HeadSide<'a> {
     pub(super) felt: Liquid,
     /// Share of the surface that is wet, 0-1.
     pub(super) wetness: f64,
+    /// Share of a clean felt's evaporation that scale leaves, 0-1.
+    pub(super) clean_share: f64,
     /// The felt is ice.
     pub(super) iced: bool,
 }
@@ -43,7 +45,7 @@ impl HeadSide<'_> {
             self.forcing.air_speed_m_s,
         );
         let film_k = 0.5 * (surface_k + air.temp_k);
-        let wet_m2 = head.wet_area_m2 * self.wetness * self.tuning.transfer_factor;
+        let wet_m2 = head.wet_area_m2 * self.wetness * self.clean_share * self.tuning.transfer_factor;
         let loss_kg_s = vapour_fluxes_kg_m2s(&film, film_k, vapours_pa, air).map(|flux| flux * wet_m2);
         let latent = self.latent_heats_j_kg(surface_k);
         let dry_w_m2 = self.tuning.transfer_factor * film.heat_w_m2k * (air.temp_k - surface_k)

@@ -124,6 +124,7 @@ pub fn stall_humidity(device: &Device, air_temp_k: f64, air_speed_m_s: f64, pres
             forcing: &forcing,
             felt,
             wetness: 1.0,
+            clean_share: 1.0,
             iced: false,
         };
         tip_balance(&head, &Engine::at(device, &felt, air_temp_k)).driving_w > 0.0

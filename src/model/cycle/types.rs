@@ -142,6 +142,8 @@ pub struct State {
     pub cup_temp_k: f64,
     /// The felt dried out while the device stood still: it waits for a person.
     pub dried_out: bool,
+    /// Scale left on the felt by hard water [kg].
+    pub scale_kg: f64,
     /// Felt or cup is frozen.
     pub iced: bool,
     /// How far a resolved dip ran past the end of the last stretch [s].

@@ -57,6 +57,7 @@ bounds! {
     CONDUCTION_W_K "conduction_w_k" "W/K" 0.0 1.0
     STRENGTH_ABV_PCT "evaporant/strength_abv_pct" "% by volume" 0.0 96.0
     HARDNESS_MG_L "evaporant/hardness_mg_l" "mg/L" 0.0 2000.0
+    SCALE_EFFECT_PCT "evaporant/scale_effect_pct" "%" 0.0 20.0
     LAMP_ABSORBED_W "lamp/absorbed_w" "W" 0.0 1000.0
     CUP_OPENING_DIAMETER_MM "cup/opening_diameter_mm" "mm" 5.0 2000.0
     CUP_DEPTH_MM "cup/depth_mm" "mm" 2.0 1000.0

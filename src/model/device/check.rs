@@ -113,6 +113,8 @@ fn assemble(
         },
         evaporant_abv_pct: strength_abv_pct,
         hardness_mg_l: filled.hardness_mg_l,
+        // 1 mg/cm² is 0.01 kg/m², so a percent for each is one for a kilogram on a square metre.
+        scale_effect_m2_kg: filled.scale_effect_pct,
         lamp: definition.lamp.clone(),
         cup: definition
             .cup

@@ -148,6 +148,8 @@ pub struct EvaporantDefinition {
     pub strength_abv_pct: Option<f64>,
     /// Hardness of the water [mg/L as CaCO3], for scale.
     pub hardness_mg_l: Option<f64>,
+    /// Evaporation lost for each mg/cm² of scale on the felt [%].
+    pub scale_effect_pct: Option<f64>,
 }
 
 /// The end a lamp shines on.

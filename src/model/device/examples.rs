@@ -175,6 +175,7 @@ fn water() -> EvaporantDefinition {
         name: "water".to_string(),
         strength_abv_pct: None,
         hardness_mg_l: None,
+        scale_effect_pct: None,
     }
 }
 

@@ -15,6 +15,8 @@ pub const DEFAULT_CRITICAL_SHARE: f64 = 0.3;
 pub const DEFAULT_EXCHANGE_SHARE: f64 = 0.05;
 /// Heat conducted from body to head [W/K].
 pub const DEFAULT_CONDUCTION_W_K: f64 = 0.002;
+/// Evaporation lost for each mg/cm² of scale on the felt [%]; assumed until service records say better.
+pub const DEFAULT_SCALE_EFFECT_PCT: f64 = 1.0;
 /// Time from letting go to upright again [s].
 pub const DEFAULT_DIP_SECONDS: f64 = 2.0;
 /// Share of the head's liquid that drains in a dip.
@@ -44,6 +46,7 @@ pub(super) struct Filled {
     pub(super) vapour_reset: f64,
     pub(super) conduction_w_k: f64,
     pub(super) hardness_mg_l: f64,
+    pub(super) scale_effect_pct: f64,
     pub(super) covered_fraction: f64,
     pub(super) freeboard_mm: f64,
     pub(super) shared_by: u32,
@@ -84,6 +87,7 @@ impl Filled {
             vapour_reset: cycle[2],
             conduction_w_k: cycle[3],
             hardness_mg_l: cycle[4],
+            scale_effect_pct: cycle[5],
             covered_fraction: cup.0,
             freeboard_mm: cup.1,
             shared_by: cup.2,
@@ -170,8 +174,8 @@ fn fill_build(definition: &Definition, filler: &mut Filler) -> [f64; 4] {
     ]
 }
 
-/// Dip seconds, drain fraction, vapour reset, conduction, hardness.
-fn fill_cycle(definition: &Definition, filler: &mut Filler) -> [f64; 5] {
+/// Dip seconds, drain fraction, vapour reset, conduction, hardness, effect of scale.
+fn fill_cycle(definition: &Definition, filler: &mut Filler) -> [f64; 6] {
     let dip = &definition.dip;
     let reset = "the period by up to a factor of two, hardly the water; calibrate the heat per cycle on one timed run";
     let conduction = "the stall humidity and slow cycles a little; glass and liquid alone conduct about 0.0003 in a shelf device, the rest stands \
@@ -211,6 +215,13 @@ fn fill_cycle(definition: &Definition, filler: &mut Filler) -> [f64; 5] {
             "mg/L",
             "hardness of the water",
             "scale in the felt, which slows it over months; none is counted",
+        ),
+        filler.number(
+            definition.evaporant.scale_effect_pct,
+            DEFAULT_SCALE_EFFECT_PCT,
+            "%",
+            "evaporation lost for each mg/cm2 of scale on the felt, down to 30 % of a clean felt",
+            "how fast hard water slows the device; nothing with soft water",
         ),
     ]
 }

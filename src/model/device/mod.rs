@@ -27,8 +27,8 @@ pub use derived::Derived;
 pub use examples::{Example, examples};
 pub use filled::{
     DEFAULT_ABSORPTANCE, DEFAULT_CONDUCTION_W_K, DEFAULT_CRITICAL_SHARE, DEFAULT_DIP_ANGLE_DEG, DEFAULT_DIP_SECONDS,
-    DEFAULT_DRAIN_FRACTION, DEFAULT_END_GAP_MM, DEFAULT_EXCHANGE_SHARE, DEFAULT_FREEBOARD_MM, DEFAULT_UPTAKE_SHARE,
-    DEFAULT_VAPOUR_RESET,
+    DEFAULT_DRAIN_FRACTION, DEFAULT_END_GAP_MM, DEFAULT_EXCHANGE_SHARE, DEFAULT_FREEBOARD_MM, DEFAULT_SCALE_EFFECT_PCT,
+    DEFAULT_UPTAKE_SHARE, DEFAULT_VAPOUR_RESET,
 };
 pub use hydrostatics::Hydrostatics;
 pub use shape::{TUBE_WALL_MIN_MM, TUBE_WIDEST_SHARE};
@@ -58,6 +58,8 @@ pub struct Device {
     pub evaporant_abv_pct: f64,
     /// Hardness of the water filled in [mg/L as CaCO3]; 0 where it was not given.
     pub hardness_mg_l: f64,
+    /// Share of evaporation lost for each kilogram of scale on a square metre of felt [m²/kg].
+    pub scale_effect_m2_kg: f64,
     /// Lamp, if any.
     pub lamp: Option<LampDefinition>,
     /// Cup, if any.

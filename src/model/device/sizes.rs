@@ -20,6 +20,7 @@ pub(super) fn check(definition: &Definition, faults: &mut Faults) {
     faults.optional(CONDUCTION_W_K, definition.conduction_w_k);
     faults.optional(STRENGTH_ABV_PCT, definition.evaporant.strength_abv_pct);
     faults.optional(HARDNESS_MG_L, definition.evaporant.hardness_mg_l);
+    faults.optional(SCALE_EFFECT_PCT, definition.evaporant.scale_effect_pct);
     faults.optional(LAMP_ABSORBED_W, definition.lamp.as_ref().map(|lamp| lamp.absorbed_w));
     faults.optional(MAX_TEMPERATURE_C, definition.max_temperature_c);
     if let Some(cup) = &definition.cup {

@@ -119,6 +119,7 @@ fn check_initial(initial: &InitialState, device: &Device, faults: &mut Vec<Fault
     };
     let felt_g = 1e3 * device.head.felt_capacity_kg * (1.0 + ROUNDING);
     field("felt_liquid_g", initial.felt_liquid_g, 0.0, felt_g);
+    field("scale_mg", initial.scale_mg, 0.0, 1e6);
     field("body_temp_c", initial.body_temp_c, -60.0, 90.0);
     field("head_temp_c", initial.head_temp_c, -60.0, 90.0);
     // Water stays water: a strength can be given only where the device drinks spirit.

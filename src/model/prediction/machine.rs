@@ -85,6 +85,7 @@ impl RunningDevice<'_> {
             head_temp_c: state.head_temp_k - ZERO_CELSIUS_K,
             cup_temp_c: state.cup_temp_k - ZERO_CELSIUS_K,
             dried_out: state.dried_out,
+            scale_mg: 1e6 * state.scale_kg,
         }
     }
 
@@ -96,6 +97,7 @@ impl RunningDevice<'_> {
         state.head_temp_k = kelvin(given.head_temp_c, state.head_temp_k);
         state.cup_temp_k = kelvin(given.cup_temp_c, state.cup_temp_k);
         state.dried_out = given.dried_out.unwrap_or(state.dried_out);
+        state.scale_kg = given.scale_mg.map_or(state.scale_kg, |mg| 1e-6 * mg);
         let felt_kg = given.felt_liquid_g.map_or(state.felt.total_kg(), |g| 1e-3 * g);
         state.felt = liquid(felt_kg, given.felt_strength_abv_pct, self.device);
         if let Some(cup) = &self.device.cup {

@@ -156,6 +156,8 @@ pub struct InitialState {
     pub cup_temp_c: Option<f64>,
     /// The felt has dried out and waits for a person.
     pub dried_out: Option<bool>,
+    /// Scale on the felt [mg].
+    pub scale_mg: Option<f64>,
 }
 
 /// From the 5th to the 95th percentile of an uncertain input.

@@ -290,6 +290,8 @@ pub struct EndState {
     pub cup_temp_c: f64,
     /// The felt has dried out and waits for a person.
     pub dried_out: bool,
+    /// Scale on the felt [mg].
+    pub scale_mg: f64,
 }
 
 impl From<EndState> for InitialState {
@@ -304,6 +306,7 @@ impl From<EndState> for InitialState {
             head_temp_c: Some(end.head_temp_c),
             cup_temp_c: end.cup_drop_mm.map(|_| end.cup_temp_c),
             dried_out: Some(end.dried_out),
+            scale_mg: Some(end.scale_mg),
         }
     }
 }

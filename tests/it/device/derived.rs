@@ -39,6 +39,7 @@ fn spirit_weighs_less_in_the_felt() {
         name: "ethanol_water".to_string(),
         strength_abv_pct: Some(40.0),
         hardness_mg_l: None,
+        scale_effect_pct: None,
     };
     let device = sound(&spirit).device;
     // 948.05 kg/m3 at 40 % by volume and 20 °C against 998.2 (OIML R 22).
@@ -149,6 +150,7 @@ fn cautions_follow_fluid_lamp_strength_and_cup() {
         name: "ethanol_water".into(),
         strength_abv_pct: Some(40.0),
         hardness_mg_l: None,
+        scale_effect_pct: None,
     };
     let lit = codes(&lit);
     for code in [

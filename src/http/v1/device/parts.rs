@@ -100,6 +100,9 @@ mirror! {
         /// Hardness of the water [mg/L as CaCO3], for scale.
         #[serde(default, skip_serializing_if = "Option::is_none")]
         hardness_mg_l: Option<f64>,
+        /// Evaporation lost for each mg/cm² of scale on the felt [%], down to 30 % of a clean felt. Default 1.
+        #[serde(default, skip_serializing_if = "Option::is_none")]
+        scale_effect_pct: Option<f64>,
     }
 }
 

@@ -1,7 +1,7 @@
 //! What the device would do in one instant's air if that air stayed.
 
 use super::super::engine::{Engine, Nodes};
-use super::super::ledger::wetness;
+use super::super::ledger::{clean_share, wetness};
 use super::super::sides::HeadSide;
 use super::super::stall::{Rest, rest, tip_balance};
 use super::super::types::{Forcing, HourState, State, Tuning};
@@ -112,6 +112,7 @@ pub(in crate::model::cycle) fn head_side<'a>(plant: Plant<'a>, state: &State, fo
         forcing,
         felt: state.felt,
         wetness: wetness(plant.device, &state.felt),
+        clean_share: clean_share(plant.device, state),
         iced: state.iced,
     }
 }
