@@ -21,23 +21,35 @@ pub(super) struct TipBalance {
 /// The balance at the tip for a felt and a forcing.
 pub(super) fn tip_balance(head: &HeadSide, engine: &Engine) -> TipBalance {
     let device = head.device;
-    let (mut body_k, mut x_k) = (head.forcing.air.temp_k, 0.0);
-    // The difference depends weakly on the body's temperature: it settles in two or three rounds.
-    for _ in 0..6 {
-        let next_x_k = engine.holding_k(device.tip_volume_m3, body_k);
-        body_k = body_rest_k(head, device.conduction_w_k * next_x_k, body_k);
-        let moved_k = (next_x_k - x_k).abs();
-        x_k = next_x_k;
-        if moved_k < 1e-9 {
-            break;
-        }
-    }
+    let air_k = head.forcing.air.temp_k;
+    // The difference depends weakly on the body's temperature, and what it conducts is weak too: one correction settles both.
+    let near_k = body_rest_k(
+        head,
+        device.conduction_w_k * engine.holding_k(device.tip_volume_m3, air_k),
+        air_k,
+    );
+    let body_k = body_rest_k(
+        head,
+        device.conduction_w_k * engine.holding_k(device.tip_volume_m3, near_k),
+        near_k,
+    );
+    let x_k = engine.holding_k(device.tip_volume_m3, body_k);
     let (flow, _) = head.at_node(body_k - x_k);
     TipBalance {
         body_k,
         x_k,
         driving_w: flow.heat_w - device.conduction_w_k * x_k,
     }
+}
+
+/// What is left to lift liquid just below the tip with the body at `body_k`: q - kx + (C_h/C_b)(G - kx) [W].
+pub(super) fn tip_driving_w(head: &HeadSide, engine: &Engine, body_k: f64) -> f64 {
+    let device = head.device;
+    let x_k = engine.holding_k(device.tip_volume_m3, body_k);
+    let conducted_w = device.conduction_w_k * x_k;
+    let gained_w = body_gain_w(device, head.tuning, head.forcing, body_k);
+    let ratio = engine.head_j_k(device.tip_volume_m3) / engine.body_j_k(device.tip_volume_m3);
+    head.at_node(body_k - x_k).0.heat_w - conducted_w + ratio * (gained_w - conducted_w)
 }
 
 /// A device that does not cycle: q = k x and G = k x.
@@ -66,7 +78,7 @@ pub(super) fn rest(head: &HeadSide) -> Rest {
         let next_k = body_rest_k(head, conduction * (body_k - head_k), body_k);
         let moved_k = (next_k - body_k).abs();
         body_k = next_k;
-        if moved_k < 1e-7 {
+        if moved_k < 1e-6 {
             break;
         }
     }
@@ -85,7 +97,8 @@ fn body_rest_k(head: &HeadSide, conducted_w: f64, near_k: f64) -> f64 {
     root(miss, near_k, -0.05)
 }
 
-/// Root of a smooth monotone function by the secant method from a guess and a guessed slope.
+/// Root of a smooth monotone function by the secant method from a guess and a guessed slope. The step after which it
+/// stops is below 1e-6, which leaves an error far below that, since each step squares what the last one left.
 pub(super) fn root(f: impl Fn(f64) -> f64, guess: f64, slope: f64) -> f64 {
     let (mut older, mut f_older) = (guess, f(guess));
     if f_older == 0.0 {
@@ -94,12 +107,15 @@ pub(super) fn root(f: impl Fn(f64) -> f64, guess: f64, slope: f64) -> f64 {
     let mut here = guess - (f_older / slope).clamp(-20.0, 20.0);
     for _ in 0..40 {
         let f_here = f(here);
-        if f_here == 0.0 || f_here == f_older || (here - older).abs() < 1e-11 {
+        if f_here == 0.0 || f_here == f_older {
             break;
         }
         let step = (f_here * (here - older) / (f_here - f_older)).clamp(-20.0, 20.0);
         (older, f_older) = (here, f_here);
         here -= step;
+        if step.abs() < 1e-6 {
+            break;
+        }
     }
     here
 }

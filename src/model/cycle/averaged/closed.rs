@@ -2,7 +2,7 @@
 
 use super::super::engine::Engine;
 use super::super::sides::{HeadSide, body_gain_w};
-use super::super::stall::{TipBalance, root, tip_balance};
+use super::super::stall::{TipBalance, root, tip_balance, tip_driving_w};
 use super::local::{Local, Start};
 use super::march::{Cycle, march};
 
@@ -42,6 +42,14 @@ impl Closed {
 /// Solves the closure for a head in steady air, from the last cycle found if there is one.
 pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'a> {
     let air_k = head.forcing.air.temp_k;
+    if last.is_none() {
+        // It did not cycle before: the static balance is asked first, since it is cheap and usually says no again.
+        let engine = Engine::at(head.device, &head.felt, air_k);
+        let rest = tip_balance(head, &engine);
+        if rest.driving_w <= 0.0 {
+            return resting(head, &engine, &rest);
+        }
+    }
     let mut start = last.unwrap_or_else(|| first_start(head));
     let mut refused = false;
     for _ in 0..8 {
@@ -52,7 +60,7 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
                 if closed.is_close_to_stall() {
                     let rest = tip_balance(head, &local.engine);
                     if rest.driving_w <= 0.0 {
-                        return resting(&local, &rest);
+                        return resting(head, &local.engine, &rest);
                     }
                 }
                 return Balance::Cycling { local, closed };
@@ -61,7 +69,7 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
             None => {
                 let rest = tip_balance(head, &local.engine);
                 if rest.driving_w <= 0.0 || refused {
-                    return resting(&local, &rest);
+                    return resting(head, &local.engine, &rest);
                 }
                 refused = true;
                 start = Start {
@@ -74,7 +82,7 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
         }
     }
     let local = Local::around(head, air_k + start.lag_k, start);
-    resting(&local, &tip_balance(head, &local.engine))
+    resting(head, &local.engine, &tip_balance(head, &local.engine))
 }
 
 /// Where the next search may start after a cycle was found.
@@ -106,13 +114,13 @@ fn two_node_k(local: &Local, near_k: f64, start: Start) -> f64 {
     if (body_k - near_k).abs() < 5.0 { body_k } else { near_k }
 }
 
-fn resting<'a>(local: &Local, rest: &TipBalance) -> Balance<'a> {
-    let tip_m3 = local.engine.device.tip_volume_m3;
-    let ratio = local.engine.head_j_k(tip_m3) / local.engine.body_j_k(tip_m3);
-    let slope_w_k = local.heat_w.slope(rest.body_k - rest.x_k) + ratio * local.gain_w.slope(rest.body_k);
+/// A device that cannot tip, and how its missing power answers to a warmer body.
+fn resting<'a>(head: &HeadSide, engine: &Engine, rest: &TipBalance) -> Balance<'a> {
+    const WARMER_K: f64 = 0.2;
+    let warmer_w = tip_driving_w(head, engine, rest.body_k + WARMER_K);
     Balance::Resting {
         driving_w: rest.driving_w.min(0.0),
-        slope_w_k,
+        slope_w_k: (warmer_w - rest.driving_w) / WARMER_K,
     }
 }
 

@@ -63,7 +63,7 @@ pub(in crate::model::cycle) struct Memo {
 pub(super) fn respond(plant: Plant, state: &mut State, forcing: &Forcing) -> Response {
     if let Some(memo) = state.memo
         && memo.forcing == *forcing
-        && same_felt(&memo.felt, &state.felt)
+        && same_felt(plant.device, &memo.felt, &state.felt)
         && memo.iced == state.iced
     {
         return memo.response;
@@ -98,10 +98,12 @@ pub(in crate::model::cycle) fn settled_nodes(plant: Plant, state: &State, forcin
     }
 }
 
-/// Felts that differ by rounding only give the same answer.
-fn same_felt(a: &Liquid, b: &Liquid) -> bool {
-    let close = |x: f64, y: f64| (x - y).abs() <= 1e-9 * x.abs().max(y.abs());
-    close(a.water_kg, b.water_kg) && close(a.ethanol_kg, b.ethanol_kg)
+/// Felts that give the same answer: equally wet, equally strong, and about as heavy. The weight matters only through the
+/// head's heat store, a few parts in ten thousand of the period here.
+fn same_felt(device: &Device, a: &Liquid, b: &Liquid) -> bool {
+    let heavy = (a.total_kg() - b.total_kg()).abs() <= 0.02 * device.head.felt_capacity_kg;
+    let strong = (a.ethanol_mass_fraction() - b.ethanol_mass_fraction()).abs() <= 1e-4;
+    heavy && strong && wetness(device, a) == wetness(device, b)
 }
 
 /// The head as `state` has it.
@@ -147,6 +149,7 @@ fn unfrozen(head: &HeadSide, state: &mut State) -> Response {
             }
         }
         Balance::Resting { driving_w, slope_w_k } => {
+            state.start = None;
             let standing = standing(head, HourState::Humid);
             let state = if standing.body_k > head.device.max_temp_k {
                 HourState::Overheated

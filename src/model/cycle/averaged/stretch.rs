@@ -5,9 +5,13 @@ use super::super::types::{Forcing, HourForcing, HourState, State, Stretch};
 use super::respond::{Plant, Response, respond};
 
 /// No piece is cut shorter than this [s].
-const SHORTEST_S: f64 = 110.0;
+const SHORTEST_S: f64 = 240.0;
 /// A rate that changes by more than this share over a piece asks for a shorter piece.
 const RATE_CHANGE: f64 = 0.25;
+/// With fewer cycles than this in a piece their change is not worth a shorter one.
+const FEW_CYCLES: f64 = 2.0;
+/// A felt that dries or fills is followed in pieces no longer than this [s].
+const FELT_S: f64 = 110.0;
 /// A mixed evaporant's strength drifts: pieces no longer than this [s].
 const MIXED_S: f64 = 240.0;
 
@@ -24,9 +28,11 @@ pub(in crate::model::cycle) fn advance(
         end_s: from_s,
         ..Stretch::default()
     };
+    let mut last_s = f64::INFINITY;
     while out.end_s < to_s - 1e-6 {
         let was_due = is_due(plant.device, state);
-        let mut piece = next_piece(plant, state, hour, out.end_s, to_s);
+        let mut piece = next_piece(plant, state, hour, out.end_s, to_s.min(out.end_s + 2.0 * last_s));
+        last_s = piece.duration_s;
         let before = (*state, out);
         piece.book(plant, state, hour, &mut out);
         if piece.supply && state.cup.total_kg() > 0.0 && is_out_of_reach(plant.device, state) {
@@ -59,7 +65,7 @@ fn next_piece(plant: Plant, state: &mut State, hour: &HourForcing, from_s: f64, 
     let mut duration_s = longest_s(plant, state, &start, supply).min(to_s - from_s);
     loop {
         let end = respond(plant, state, &hour.at(from_s + duration_s));
-        if duration_s <= SHORTEST_S || alike(&start, &end) {
+        if duration_s <= SHORTEST_S || alike(&start, &end, duration_s) {
             return Piece {
                 from_s,
                 duration_s,
@@ -72,10 +78,11 @@ fn next_piece(plant: Plant, state: &mut State, hour: &HourForcing, from_s: f64, 
     }
 }
 
-fn alike(a: &Response, b: &Response) -> bool {
-    a.state == b.state
-        && a.freezes == b.freezes
-        && (a.rate_1_s - b.rate_1_s).abs() <= RATE_CHANGE * a.rate_1_s.max(b.rate_1_s)
+fn alike(a: &Response, b: &Response, duration_s: f64) -> bool {
+    let faster_1_s = a.rate_1_s.max(b.rate_1_s);
+    let few = faster_1_s * duration_s < FEW_CYCLES;
+    let steady = (a.rate_1_s - b.rate_1_s).abs() <= RATE_CHANGE * faster_1_s;
+    a.state == b.state && a.freezes == b.freezes && (few || steady)
 }
 
 /// The answer now, after freezing or thawing if it is time to.
@@ -101,13 +108,13 @@ fn longest_s(plant: Plant, state: &State, answer: &Response, supply: bool) -> f6
     if supply && answer.running() && answer.rate_1_s * head.uptake_kg > loss_kg_s {
         let filling_kg = head.felt_capacity_kg - state.felt.total_kg();
         let filling_s = if filling_kg > 0.05 * head.felt_capacity_kg {
-            SHORTEST_S
+            FELT_S
         } else {
             f64::INFINITY
         };
         return base_s.min(filling_s);
     }
-    base_s.min((above_kg.max(0.04 * head.felt_capacity_kg) / loss_kg_s).max(SHORTEST_S))
+    base_s.min((above_kg.max(0.04 * head.felt_capacity_kg) / loss_kg_s).max(FELT_S))
 }
 
 /// A piece that passes the reach by less than this is not cut again [m].

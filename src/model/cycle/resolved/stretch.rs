@@ -3,7 +3,7 @@
 use super::super::averaged::{self, Plant, head_side, why_not};
 use super::super::engine::{Engine, Nodes};
 use super::super::ledger::{DRIED_OUT_WETNESS, book_cup, book_felt, has_supply, is_due, wetness};
-use super::super::stall::{rest, tip_balance};
+use super::super::stall::{rest, tip_balance, tip_driving_w};
 use super::super::types::{Forcing, HourForcing, HourState, State, Stretch, TracePoint};
 use super::climb::{Between, Event, Phase};
 
@@ -195,13 +195,8 @@ impl<'a> Run<'a> {
             return HourState::Running;
         }
         let forcing: Forcing = self.hour.at(self.out.end_s);
-        let device = self.plant.device;
         let head = head_side(self.plant, state, &forcing);
-        let x_k = between.engine.holding_k(device.tip_volume_m3, at.body_k);
-        let conducted_w = device.conduction_w_k * x_k;
-        let gain_w = super::super::sides::body_gain_w(device, self.plant.tuning, &forcing, at.body_k);
-        let ratio = between.engine.head_j_k(device.tip_volume_m3) / between.engine.body_j_k(device.tip_volume_m3);
-        let driving_w = head.at_node(at.body_k - x_k).0.heat_w - conducted_w + ratio * (gain_w - conducted_w);
+        let driving_w = tip_driving_w(&head, &between.engine, at.body_k);
         // A body still warming up to the air will get there: the balance with a settled body decides too.
         if driving_w > 0.0 || tip_balance(&head, &between.engine).driving_w > 0.0 {
             HourState::Running
