@@ -21,11 +21,6 @@ mod server;
 mod support;
 mod reference;
 
-#[test]
-fn the_library_links() {
-    assert!(dipcast::model::notes::Assumption::new("a", "b", "c").what == "a");
-}
-
 /// A file of `tests/data`.
 fn data(name: &str) -> std::path::PathBuf {
     std::path::Path::new(env!("CARGO_MANIFEST_DIR"))

@@ -130,7 +130,7 @@ mod tests {
     #[test]
     fn the_code_is_that_of_the_part_all_faults_share() {
         let device = OrderFault::Device(Fault::new("tube/bore_mm", "below_minimum", "x"));
-        assert_eq!(code_of(&[device.clone()]), ProblemCode::InvalidDevice);
+        assert_eq!(code_of(std::slice::from_ref(&device)), ProblemCode::InvalidDevice);
         assert_eq!(code_of(&[device, weather("no_humidity")]), ProblemCode::InvalidRequest);
         assert_eq!(code_of(&[weather("no_humidity")]), ProblemCode::InvalidWeather);
         assert_eq!(code_of(&[weather("empty_file")]), ProblemCode::UnreadableWeather);
