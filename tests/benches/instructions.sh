@@ -5,8 +5,10 @@ set -euo pipefail
 cd "$(dirname "$0")/../.."
 command -v valgrind > /dev/null || { apt-get -qq update && apt-get -qq install -y valgrind > /dev/null; }
 
-binary=$(cargo bench --quiet --locked --bench instructions --no-run --message-format json \
-    | python3 -c 'import json, sys; print([m["executable"] for m in map(json.loads, sys.stdin) if m.get("executable")][-1])')
+binary=$(cargo bench --quiet --locked --bench instructions --no-run --message-format json | python3 -c '
+import json, sys
+built = [line for line in map(json.loads, sys.stdin) if line["reason"] == "compiler-artifact"]
+print([one["executable"] for one in built if one["target"]["name"] == "instructions"][-1])')
 
 count() {
     valgrind --tool=callgrind --callgrind-out-file=/dev/null "$binary" "$1" "$2" 2>&1 \
