@@ -7,6 +7,9 @@ use crate::model::air::{Air, saturation_pressure_pa};
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
 
+/// A resting body is found to this and better [K]: humidity at the stall turns on it by a hundredth of a point.
+const CLOSE_BODY_K: f64 = 3e-3;
+
 /// A device held just below the tip: the body in balance, the head asked whether it can still cool.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) struct TipBalance {
@@ -78,7 +81,7 @@ pub(super) fn rest(head: &HeadSide) -> Rest {
         let next_k = body_rest_k(head, conduction * (body_k - head_k), body_k);
         let moved_k = (next_k - body_k).abs();
         body_k = next_k;
-        if moved_k < 1e-6 {
+        if moved_k < CLOSE_BODY_K {
             break;
         }
     }
@@ -94,12 +97,16 @@ pub(super) fn rest(head: &HeadSide) -> Rest {
 /// Body temperature at which the air's gain equals what is conducted away [K].
 fn body_rest_k(head: &HeadSide, conducted_w: f64, near_k: f64) -> f64 {
     let miss = |k: f64| body_gain_w(head.device, head.tuning, head.forcing, k) - conducted_w;
-    root(miss, near_k, -0.05)
+    root_within(miss, near_k, -0.05, CLOSE_BODY_K)
 }
 
-/// Root of a smooth monotone function by the secant method from a guess and a guessed slope. The step after which it
-/// stops is below 1e-6, which leaves an error far below that, since each step squares what the last one left.
+/// Root of a smooth monotone function by the secant method from a guess and a guessed slope, to 1e-6 and better.
 pub(super) fn root(f: impl Fn(f64) -> f64, guess: f64, slope: f64) -> f64 {
+    root_within(f, guess, slope, 1e-6)
+}
+
+/// The same, stopping after a step below `close`: what is left is far smaller, since each step nearly squares it.
+fn root_within(f: impl Fn(f64) -> f64, guess: f64, slope: f64, close: f64) -> f64 {
     let (mut older, mut f_older) = (guess, f(guess));
     if f_older == 0.0 {
         return guess;
@@ -113,7 +120,7 @@ pub(super) fn root(f: impl Fn(f64) -> f64, guess: f64, slope: f64) -> f64 {
         let step = (f_here * (here - older) / (f_here - f_older)).clamp(-20.0, 20.0);
         (older, f_older) = (here, f_here);
         here -= step;
-        if step.abs() < 1e-6 {
+        if step.abs() < close {
             break;
         }
     }
