@@ -5,6 +5,7 @@ Talks to the loopback server of tests/run.sh only; counts and times are bounded.
 
 import concurrent.futures
 import http.client
+import json
 import os
 import pathlib
 import signal
@@ -12,7 +13,7 @@ import sys
 import threading
 import time
 
-EXAMPLE = pathlib.Path("openapi/examples/prediction-inline.json")
+EXAMPLE = pathlib.Path("openapi/examples/shortest.json")
 WORKERS = 4
 
 
@@ -54,11 +55,10 @@ def memory(host, pid, total=10_000, warm_up=1_000, allowed_growth=0.10):
 
 
 def drain(host, pid, before_s=2.0, allowed_s=10.0):
-    """SIGTERM while predictions run: no answer cut short, and gone in time."""
-    body = EXAMPLE.read_bytes()
+    """SIGTERM while short and long predictions run: no answer cut short, and gone in time."""
     ending, whole, cut, refused = threading.Event(), [], [], []
 
-    def load():
+    def load(body):
         while not ending.is_set():
             try:
                 status, promised, came = predict(host, body)
@@ -71,7 +71,8 @@ def drain(host, pid, before_s=2.0, allowed_s=10.0):
             except http.client.HTTPException:
                 refused.append(1)
 
-    threads = [threading.Thread(target=load) for _ in range(WORKERS)]
+    bodies = [EXAMPLE.read_bytes(), slow_request()]
+    threads = [threading.Thread(target=load, args=[bodies[n % 2]]) for n in range(WORKERS)]
     for thread in threads:
         thread.start()
     time.sleep(before_s)
@@ -85,6 +86,13 @@ def drain(host, pid, before_s=2.0, allowed_s=10.0):
         thread.join()
     print(f"SIGTERM under load: gone after {took:.2f} s; {len(whole)} whole answers, {len(cut)} cut short, {len(refused)} refused after")
     return not running(pid) and not cut and len(whole) > 0
+
+
+def slow_request():
+    """A request that takes seconds: a day, every cycle resolved."""
+    request = json.loads(pathlib.Path("openapi/examples/own-device.json").read_text())
+    request["options"] |= {"method": "resolved", "bands": False}
+    return json.dumps(request).encode()
 
 
 def running(pid):
