@@ -161,7 +161,7 @@ impl<'a> Engine<'a> {
 }
 
 /// The two temperatures and the lifted volume.
-#[derive(Debug, Clone, Copy, PartialEq)]
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub(super) struct Nodes {
     pub(super) head_k: f64,
     pub(super) body_k: f64,

@@ -36,6 +36,7 @@ impl State {
             dried_out: false,
             scale_kg: 0.0,
             iced: false,
+            first_climb: 0.0,
             ahead_s: 0.0,
             start: None,
             memo: None,

@@ -146,6 +146,8 @@ pub struct State {
     pub scale_kg: f64,
     /// Felt or cup is frozen.
     pub iced: bool,
+    /// What is left of the first climb from level rest, in cycles: no dip and no drink before that is done (averaged way).
+    pub(super) first_climb: f64,
     /// How far a resolved dip ran past the end of the last stretch [s].
     pub(super) ahead_s: f64,
     /// The last periodic cycle found: where the next search starts.

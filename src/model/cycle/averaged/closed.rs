@@ -51,12 +51,12 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
         }
     }
     let mut start = last.unwrap_or_else(|| first_start(head));
-    let mut refused = false;
+    let mut refusals = 0;
     for _ in 0..8 {
         let centre_k = air_k + start.lag_k;
         let local = Local::around(head, centre_k, start);
         match close(&local, two_node_k(&local, centre_k, start), start) {
-            Some(closed) if (closed.body_k - centre_k).abs() <= 1.3 * start.reach_k() => {
+            Some(closed) if !start.is_guess && (closed.body_k - centre_k).abs() <= 1.3 * start.reach_k() => {
                 if closed.is_close_to_stall() {
                     let rest = tip_balance(head, &local.engine);
                     if rest.driving_w <= 0.0 {
@@ -68,16 +68,20 @@ pub(super) fn balance<'a>(head: &HeadSide<'a>, last: Option<Start>) -> Balance<'
             Some(closed) => start = next_start(&local, &closed, air_k),
             None => {
                 let rest = tip_balance(head, &local.engine);
-                if rest.driving_w <= 0.0 || refused {
+                if rest.driving_w <= 0.0 || refusals == 2 {
                     return resting(head, &local.engine, &rest);
                 }
-                refused = true;
-                start = Start {
-                    lag_k: rest.body_k - air_k,
-                    span_k: rest.x_k,
-                    mean_difference_k: rest.x_k,
-                    ..start
-                };
+                // A start from other air may be too far off; near the stall only the balance at rest is near enough.
+                start = first_start(head);
+                if refusals == 1 || last.is_none() {
+                    start = Start {
+                        lag_k: rest.body_k - air_k,
+                        span_k: rest.x_k,
+                        mean_difference_k: rest.x_k,
+                        ..start
+                    };
+                }
+                refusals += 1;
             }
         }
     }
@@ -95,6 +99,8 @@ pub(super) fn next_start(local: &Local, closed: &Closed, air_k: f64) -> Start {
     let head_k = cycle.head_k_s / cycle.period_s;
     Start {
         span_k: local.holding_k(local.engine.device.tip_volume_m3, body_k),
+        least_difference_k: body_k - cycle.after_dip.head_k,
+        is_guess: false,
         felt_drop_k: head_k - local.surface_k.at(head_k),
         mean_difference_k: body_k - head_k,
         two_node_rest_w: local.gain_w.at(body_k) - local.heat_w.at(head_k),
@@ -136,6 +142,8 @@ fn first_start(head: &HeadSide) -> Start {
     );
     Start {
         span_k,
+        least_difference_k: 0.15 * span_k,
+        is_guess: true,
         felt_drop_k: head.device.head.felt_resistance_k_w * taken_w(body_k),
         mean_difference_k: 0.7 * span_k,
         two_node_rest_w: 0.0,
@@ -144,12 +152,25 @@ fn first_start(head: &HeadSide) -> Start {
     }
 }
 
+/// The warmest a body gets that loses no more than what is conducted where the difference is least [K]: a closure found
+/// above it is an accident of the curves.
+fn ceiling_k(local: &Local, guess_k: f64, start: Start) -> f64 {
+    let conducted_w = local.engine.device.conduction_w_k * start.least_difference_k;
+    let mut body_k = guess_k;
+    for _ in 0..4 {
+        body_k += (conducted_w - local.gain_w.at(body_k)) / local.gain_w.slope(body_k);
+    }
+    if (body_k - guess_k).abs() < 5.0 {
+        body_k
+    } else {
+        guess_k + 5.0
+    }
+}
+
 /// Bracketed secant on the mean power imbalance. Too cold a body starves; above the ceiling the air gives it nothing more.
 fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
-    let conducted_w = local.engine.device.conduction_w_k * start.span_k;
-    let ceiling_k = guess_k + (conducted_w - local.gain_w.at(guess_k)) / local.gain_w.slope(guess_k);
-    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k.clamp(guess_k, guess_k + 5.0) + 0.2);
-    let mut body_k = guess_k;
+    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k(local, guess_k, start));
+    let mut body_k = guess_k.min(high_k - 1e-3);
     let mut older: Option<(f64, f64)> = None;
     let mut slope_share = start.slope_share;
     for _ in 0..80 {

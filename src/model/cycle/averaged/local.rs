@@ -24,8 +24,10 @@ impl<'a> Local<'a> {
     /// Around a body temperature at the tip. `start` says how large the difference and the felt's own drop about are.
     pub(super) fn around(head: &HeadSide<'a>, body_k: f64, start: Start) -> Self {
         let device = head.device;
-        let reach_k = start.reach_k() + 0.45 * start.span_k;
-        let middle_k = body_k - 0.6 * start.span_k - start.felt_drop_k;
+        // Only as wide as the head's own way in a cycle: still air's coefficient has a cusp near the air temperature, where
+        // cooling and added vapour sink and lift the air equally, and a wide curve would catch it from afar.
+        let reach_k = start.reach_k() + 0.5 * (start.span_k - start.least_difference_k);
+        let middle_k = body_k - 0.5 * (start.span_k + start.least_difference_k) - start.felt_drop_k;
         let surfaces_k = [middle_k - reach_k, middle_k, middle_k + reach_k];
         let flows = surfaces_k.map(|surface_k| head.at_surface(surface_k));
         let resistance = device.head.felt_resistance_k_w;
@@ -71,6 +73,10 @@ impl<'a> Local<'a> {
 pub(in crate::model::cycle) struct Start {
     /// Difference between body and head at the tip [K].
     pub(super) span_k: f64,
+    /// Body at the tip less head right after the dip, when it is warmest [K].
+    pub(super) least_difference_k: f64,
+    /// Nothing of this comes from a cycle yet.
+    pub(super) is_guess: bool,
     /// Difference between head and felt surface [K].
     pub(super) felt_drop_k: f64,
     /// Mean difference between body at the tip and head over a cycle [K].

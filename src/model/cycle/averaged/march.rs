@@ -20,6 +20,8 @@ pub(super) struct Cycle {
     pub(super) loss_kg: [f64; 2],
     /// Time integral of the head temperature [K s].
     pub(super) head_k_s: f64,
+    /// Where the dip leaves both temperatures and the liquid.
+    pub(super) after_dip: Nodes,
     /// Driving power at the tip [W]; the stall is where it vanishes.
     pub(super) tip_driving_w: f64,
     /// Heat moved while climbing [J].
@@ -55,8 +57,8 @@ struct Point {
 /// Marches one cycle from the tip with the body at `body_k` to the next tip.
 pub(super) fn march(local: &Local, body_k: f64) -> Result<Cycle, Starved> {
     let mut cycle = Cycle::default();
-    let risen = through_the_dip(local, body_k, &mut cycle);
-    climb(local, risen, body_k, &mut cycle)?;
+    cycle.after_dip = through_the_dip(local, body_k, &mut cycle);
+    climb(local, cycle.after_dip, body_k, &mut cycle)?;
     Ok(cycle)
 }
 

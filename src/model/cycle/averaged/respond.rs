@@ -26,10 +26,12 @@ pub(in crate::model::cycle) struct Response {
     pub(in crate::model::cycle) rate_1_s: f64,
     /// Water and ethanol leaving the head [kg/s].
     pub(in crate::model::cycle) loss_kg_s: [f64; 2],
-    /// Settled body temperature [K].
+    /// Settled mean body temperature [K].
     pub(in crate::model::cycle) body_k: f64,
     /// Settled mean head temperature [K].
     pub(in crate::model::cycle) head_k: f64,
+    /// Both temperatures and the liquid right after a dip, or at rest: what a [`State`] holds between stretches.
+    pub(in crate::model::cycle) between: Nodes,
     /// Driving power at the tip [W]; it runs where this is positive.
     pub(in crate::model::cycle) driving_w: f64,
     /// How the driving power answers to a body warmer than settled [W/K].
@@ -94,7 +96,10 @@ pub(in crate::model::cycle) fn settled_nodes(plant: Plant, state: &State, forcin
     Nodes {
         head_k,
         body_k,
-        lifted_m3: engine.held_m3(body_k - head_k, body_k),
+        // Below the tip, so that a device that can tip does.
+        lifted_m3: engine
+            .held_m3(body_k - head_k, body_k)
+            .min(0.999 * plant.device.tip_volume_m3),
     }
 }
 
@@ -123,23 +128,27 @@ fn unfrozen(head: &HeadSide, state: &mut State) -> Response {
     match balance(head, state.start) {
         Balance::Cycling { local, closed } => {
             state.start = Some(next_start(&local, &closed, head.forcing.air.temp_k));
-            let Closed { cycle, body_k, .. } = closed;
+            let Closed {
+                cycle, body_k: tip_k, ..
+            } = closed;
+            let body_k = 0.5 * (tip_k + cycle.after_dip.body_k);
             let head_k = cycle.head_k_s / cycle.period_s;
             let tip_m3 = head.device.tip_volume_m3;
             let ratio = local.engine.head_j_k(tip_m3) / local.engine.body_j_k(tip_m3);
-            let (taken, gained) = (local.heat_w.slope(head_k), local.gain_w.slope(body_k));
+            let (taken, gained) = (local.heat_w.slope(head_k), local.gain_w.slope(tip_k));
             let driving_slope_w_k = taken + ratio * gained;
             let loss_w_k = local.loss_kg_s[0].slope(head_k) + local.loss_kg_s[1].slope(head_k);
             let loss_kg_s = cycle.loss_kg.map(|kg| kg / cycle.period_s);
             let total = loss_kg_s[0] + loss_kg_s[1];
             let stored_j_k = local.engine.head_j_k(0.0) + local.engine.body_j_k(0.0);
-            let hot = body_k > head.device.max_temp_k;
+            let hot = tip_k > head.device.max_temp_k;
             Response {
                 state: if hot { HourState::Overheated } else { HourState::Running },
                 rate_1_s: if hot { 0.0 } else { 1.0 / cycle.period_s },
                 loss_kg_s,
                 body_k,
                 head_k,
+                between: cycle.after_dip,
                 driving_w: cycle.tip_driving_w,
                 driving_slope_w_k,
                 rate_slope_1_k: driving_slope_w_k / cycle.mean_driving_w(),
@@ -183,6 +192,12 @@ fn standing(head: &HeadSide, state: HourState) -> Response {
         loss_kg_s: flow.loss_kg_s,
         body_k,
         head_k,
+        // What is lifted follows from the temperatures when the device is next asked to move.
+        between: Nodes {
+            head_k,
+            body_k,
+            lifted_m3: 0.0,
+        },
         driving_w: -1.0,
         driving_slope_w_k: 0.0,
         rate_slope_1_k: 0.0,
