@@ -280,7 +280,7 @@ fn telling_byte() -> impl Strategy<Value = u8> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 300, failure_persistence: None, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig { cases: crate::cases(300), failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn any_bytes_never_panic(bytes in prop::collection::vec(telling_byte(), 0..400)) {

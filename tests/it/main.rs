@@ -27,3 +27,11 @@ fn data(name: &str) -> std::path::PathBuf {
         .join("tests/data")
         .join(name)
 }
+
+/// Cases of a property test: the usual number, unless `PROPTEST_CASES` asks for another (`tests/run.sh long` does).
+fn cases(usual: u32) -> u32 {
+    std::env::var("PROPTEST_CASES")
+        .ok()
+        .and_then(|asked| asked.parse().ok())
+        .unwrap_or(usual)
+}

@@ -97,7 +97,7 @@ fn definitions() -> impl Strategy<Value = Definition> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 3000, failure_persistence: None, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig { cases: crate::cases(3000), failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn anything_is_either_refused_in_words_or_fit_to_run(definition in definitions()) {

@@ -81,7 +81,7 @@ fn devices() -> impl Strategy<Value = Device> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 200, max_global_rejects: 200_000, failure_persistence: None, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig { cases: crate::cases(200), max_global_rejects: 200_000, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn upright_the_lift_always_rises_and_its_slope_is_its_derivative(device in devices(), share in 0.001..0.999_f64) {
