@@ -2,8 +2,8 @@
 //!
 //! The demo plays in an invented place with invented weather; both files are inside the binary.
 
-use std::fmt::Write;
 use std::net::SocketAddr;
+use std::time::Duration;
 
 use reqwest::multipart::{Form, Part};
 use serde_json::Value;
@@ -16,7 +16,7 @@ pub(super) async fn run(address: SocketAddr) -> Result<String, String> {
     let base = format!("http://{address}");
     let answer = ask(&base)
         .await
-        .map_err(|error| format!("the demo's request failed: {error}"))?;
+        .map_err(|error| format!("the demo's request failed: {error:?}"))?;
     let mut text = String::from(SCENE);
     text.push_str(&table(&answer));
     text.push_str(&causes(&answer));
@@ -24,12 +24,15 @@ pub(super) async fn run(address: SocketAddr) -> Result<String, String> {
     Ok(text)
 }
 
+/// Far more than a slow machine needs.
+const LONGEST_WAIT: Duration = Duration::from_secs(300);
+
 const SCENE: &str = "\n\
     The demo: a shelf device in the gift shop of the lighthouse on Tolmarrow Skerry, an island that does not exist,\n\
     through a year of invented weather. Somebody comes by within twelve hours of being needed.\n\n";
 
 async fn ask(base: &str) -> Result<Value, reqwest::Error> {
-    let client = reqwest::Client::builder().no_proxy().build()?;
+    let client = super::local_client(LONGEST_WAIT)?;
     let form = Form::new()
         .part("request", Part::text(REQUEST).mime_str("application/json")?)
         .part(
@@ -47,36 +50,27 @@ async fn ask(base: &str) -> Result<Value, reqwest::Error> {
 }
 
 fn table(answer: &Value) -> String {
-    let mut text = format!(
-        "{:<9} {:>9} {:>19} {:>6} {:>11} {:>9} {:>17} {:>7}\n",
-        "", "cycles", "", "stall", "", "water", "", "visits"
-    );
-    let _ = writeln!(
-        text,
-        "{:<9} {:>9} {:>19} {:>6} {:>11} {:>9} {:>17}",
-        "", "", "(band)", "hours", "(band)", "grams", "(band)"
-    );
+    let mut text = line("", ["cycles", "stall hours", "water [g]", "visits"].map(str::to_owned));
     let months = answer["months"].as_array().map(Vec::as_slice).unwrap_or_default();
     for month in months {
-        row(&mut text, month["label"].as_str().unwrap_or_default(), month);
+        text.push_str(&row(month["label"].as_str().unwrap_or_default(), month));
     }
-    row(&mut text, "year", &answer["summary"]);
-    text
+    text + &row("year", &answer["summary"])
 }
 
-fn row(text: &mut String, name: &str, period: &Value) {
+fn row(name: &str, period: &Value) -> String {
     let bands = &period["bands"];
-    let _ = writeln!(
-        text,
-        "{name:<9} {:>9} {:>19} {:>6} {:>11} {:>9} {:>17} {:>7}",
-        whole(&period["cycles"]),
-        band(&bands["cycles"]),
-        whole(&period["stall_hours"]["total"]),
-        band(&bands["stall_hours"]),
-        whole(&period["water_g"]["total"]),
-        band(&bands["water_g"]),
+    let cells = [
+        with_band(&period["cycles"], &bands["cycles"]),
+        with_band(&period["stall_hours"]["total"], &bands["stall_hours"]),
+        with_band(&period["water_g"]["total"], &bands["water_g"]),
         whole(&period["visits"]),
-    );
+    ];
+    line(name, cells)
+}
+
+fn line(name: &str, [cycles, stall, water, visits]: [String; 4]) -> String {
+    format!("{name:<8} {cycles:>28} {stall:>18} {water:>21} {visits:>7}\n")
 }
 
 fn causes(answer: &Value) -> String {
@@ -104,8 +98,8 @@ fn links(base: &str) -> String {
     )
 }
 
-fn band(band: &Value) -> String {
-    format!("({}-{})", whole(&band["low"]), whole(&band["high"]))
+fn with_band(value: &Value, band: &Value) -> String {
+    format!("{} ({}-{})", whole(value), whole(&band["low"]), whole(&band["high"]))
 }
 
 /// A number without decimals, thousands apart.

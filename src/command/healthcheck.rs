@@ -6,7 +6,7 @@ use clap::Args;
 
 #[derive(Args)]
 pub(super) struct Healthcheck {
-    /// Base address of the service.
+    /// Base address of the service on this machine, plain http.
     #[arg(long, default_value = "http://127.0.0.1:8080", env = "DIPCAST_HEALTHCHECK_URL")]
     url: String,
 }
@@ -18,10 +18,7 @@ pub(super) fn run(arguments: &Healthcheck) -> Result<(), String> {
         .build()
         .map_err(|error| error.to_string())?;
     let answered = runtime.block_on(async {
-        let client = reqwest::Client::builder()
-            .timeout(Duration::from_secs(3))
-            .no_proxy()
-            .build()?;
+        let client = super::local_client(Duration::from_secs(3))?;
         client.get(&url).send().await?.error_for_status()
     });
     answered

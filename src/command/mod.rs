@@ -48,3 +48,12 @@ fn print(text: &[u8]) -> Result<(), String> {
         _ => Ok(()),
     }
 }
+
+/// For calls to this machine: no proxy, and no certificates, which a bare system may not have.
+fn local_client(timeout: std::time::Duration) -> Result<reqwest::Client, reqwest::Error> {
+    reqwest::Client::builder()
+        .no_proxy()
+        .tls_certs_only([])
+        .timeout(timeout)
+        .build()
+}

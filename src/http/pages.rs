@@ -3,6 +3,9 @@
 use axum::extract::{Path, State};
 use axum::http::header;
 use axum::response::{Html, IntoResponse, Redirect, Response};
+use utoipa::openapi::RefOr;
+use utoipa::openapi::schema::{ObjectBuilder, Schema, Type};
+use utoipa::{PartialSchema, ToSchema};
 use utoipa_swagger_ui::{Config, SwaggerUi};
 
 use super::app::App;
@@ -51,7 +54,7 @@ pub async fn list_problems() -> Html<String> {
 ///
 /// The page behind the `type` of a problem document: cause, example, remedy.
 #[utoipa::path(get, path = "/problems/{code}", tag = "service", security(()),
-    params(("code" = String, Path, description = "Last part of a problem's `type`.", example = "invalid_request")),
+    params(("code" = inline(ProblemName), Path, description = "Last part of a problem's `type`.", example = "invalid_request")),
     responses((status = 200, description = "A page.", body = String, content_type = "text/html")))]
 pub async fn get_problem(Path(code): Path<String>) -> Result<Html<String>, Problem> {
     let kind = KINDS.iter().find(|kind| kind.code == code);
@@ -63,6 +66,21 @@ pub async fn get_problem(Path(code): Path<String>) -> Result<Html<String>, Probl
     };
     kind.map(explanation).ok_or_else(missing)
 }
+
+/// The codes of the table, as a schema.
+pub struct ProblemName;
+
+impl PartialSchema for ProblemName {
+    fn schema() -> RefOr<Schema> {
+        let codes = KINDS.iter().map(|kind| kind.code);
+        ObjectBuilder::new()
+            .schema_type(Type::String)
+            .enum_values(Some(codes))
+            .into()
+    }
+}
+
+impl ToSchema for ProblemName {}
 
 fn explanation(kind: &ProblemKind) -> Html<String> {
     let section = |head: &str, text: &str| format!("<h2>{head}</h2>\n<p>{}</p>\n", escaped(text));

@@ -2,6 +2,7 @@
 
 use std::process::{Command, Output};
 
+use crate::program::Program;
 use crate::support::example;
 
 fn dipcast(arguments: &[&str]) -> Output {
@@ -104,4 +105,33 @@ fn healthcheck_fails_where_nobody_listens() {
         "{}",
         text(&printed.stderr)
     );
+}
+
+#[test]
+fn the_demo_shows_a_year_and_how_to_repeat_it_and_goes_on_serving() {
+    let mut program = Program::start(&["--demo"]);
+    let shown = program.printed_until("Stop");
+    assert!(shown.contains("an island that does not exist"), "{shown}");
+    assert_eq!(
+        shown.lines().filter(|line| line.starts_with("2026-")).count(),
+        12,
+        "{shown}"
+    );
+    let repeat = shown
+        .lines()
+        .find_map(|line| line.strip_prefix("Repeat"))
+        .unwrap()
+        .trim();
+    let mut words = repeat.split(' ');
+    assert_eq!(words.next(), Some("curl"), "{repeat}");
+    let url = format!("http://{}/v1/predictions", program.address);
+    assert!(words.any(|word| word == url), "{repeat}");
+    for file in repeat.split('@').skip(1).map(|rest| rest.split(' ').next().unwrap()) {
+        assert!(
+            std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join(file).is_file(),
+            "{file}"
+        );
+    }
+    let healthy = dipcast(&["healthcheck", "--url", &format!("http://{}", program.address)]);
+    assert!(healthy.status.success(), "{}", text(&healthy.stderr));
 }

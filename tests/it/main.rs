@@ -15,6 +15,7 @@ mod house_rules;
 mod intake_csv;
 mod weather;
 mod openapi;
+mod program;
 mod prediction;
 mod routes;
 mod server;

@@ -1,56 +1,12 @@
 //! Too much of everything, against the real program, whose memory is watched.
 
-use std::io::{BufRead, BufReader, Read, Write};
+use std::io::{Read, Write};
 use std::net::TcpStream;
-use std::process::{Child, Command, Stdio};
 
 use serde_json::{Value, json};
 
+use crate::program::Program;
 use crate::support::{form, predict, request, service, upload};
-
-/// The program on a port of its own; ended when dropped.
-struct Program {
-    child: Child,
-    address: String,
-}
-
-impl Program {
-    fn start() -> Self {
-        let mut child = Command::new(env!("CARGO_BIN_EXE_dipcast"))
-            .args(["serve", "--bind", "127.0.0.1:0"])
-            .env("DIPCAST__LOG__FORMAT", "json")
-            .stderr(Stdio::piped())
-            .spawn()
-            .unwrap();
-        let lines = BufReader::new(child.stderr.take().unwrap()).lines();
-        let mut listening = lines.map(Result::unwrap).filter_map(|line| {
-            let (_, rest) = line.split_once("listening on http://")?;
-            rest.split_once(';').map(|(address, _)| address.to_owned())
-        });
-        let address = listening.next().unwrap();
-        // The rest of the log is read away, so that the program never waits for us.
-        std::thread::spawn(move || listening.count());
-        Self { child, address }
-    }
-
-    fn connect(&self) -> TcpStream {
-        TcpStream::connect(&self.address).unwrap()
-    }
-
-    /// Most memory ever used [MiB].
-    fn peak_mib(&self) -> u64 {
-        let status = std::fs::read_to_string(format!("/proc/{}/status", self.child.id())).unwrap();
-        let line = status.lines().find(|line| line.starts_with("VmHWM")).unwrap();
-        line.split_whitespace().nth(1).unwrap().parse::<u64>().unwrap() / 1024
-    }
-}
-
-impl Drop for Program {
-    fn drop(&mut self) {
-        let _ = self.child.kill();
-        let _ = self.child.wait();
-    }
-}
 
 fn answer_of(stream: &mut TcpStream) -> String {
     let mut text = Vec::new();
@@ -62,7 +18,7 @@ const TWO_GB: u64 = 2 << 30;
 
 #[test]
 fn two_gigabytes_are_refused_by_their_stated_length() {
-    let program = Program::start();
+    let program = Program::start(&[]);
     let mut stream = program.connect();
     write!(
         stream,
@@ -79,7 +35,7 @@ fn two_gigabytes_are_refused_by_their_stated_length() {
 
 #[test]
 fn two_gigabytes_in_pieces_are_cut_at_the_limit() {
-    let program = Program::start();
+    let program = Program::start(&[]);
     let mut stream = program.connect();
     let head = "POST /v1/predictions HTTP/1.1\r\nHost: x\r\nConnection: close\r\nContent-Type: application/json\r\nTransfer-Encoding: chunked\r\n\r\n";
     stream.write_all(head.as_bytes()).unwrap();
@@ -109,7 +65,7 @@ fn a_zip_bomb_is_refused_without_being_unpacked() {
         ("request", upload(Value::Null).to_string().as_bytes()),
         ("weather", bomb.as_slice()),
     ]);
-    let program = Program::start();
+    let program = Program::start(&[]);
     let mut stream = program.connect();
     let length = body.len();
     write!(
