@@ -68,6 +68,8 @@ pub struct Access {
 pub struct Limits {
     /// Largest request body [bytes].
     pub body_bytes: usize,
+    /// All request bodies held at once [bytes].
+    pub bodies_bytes: usize,
     /// Largest weather file after decompression [bytes].
     pub decompressed_bytes: usize,
 }
@@ -131,6 +133,7 @@ impl Config {
             log: read_log(&mut reader),
         };
         check_exposure(&config, &mut reader);
+        check_limits(&config.limits, &mut reader);
         reader.finish()?;
         Ok(config)
     }
@@ -177,6 +180,7 @@ fn read_access(reader: &mut Reader) -> Access {
 fn read_limits(reader: &mut Reader) -> Limits {
     Limits {
         body_bytes: reader.whole("limits.body_bytes", 1024..=1 << 30) as usize,
+        bodies_bytes: reader.whole("limits.bodies_bytes", 1024..=1 << 40) as usize,
         decompressed_bytes: reader.whole("limits.decompressed_bytes", 1024..=1 << 32) as usize,
     }
 }
@@ -191,8 +195,10 @@ fn read_runs(reader: &mut Reader) -> Runs {
 }
 
 fn read_log(reader: &mut Reader) -> Log {
+    let filter = reader.text("log.filter");
+    check_filter(&filter, reader);
     Log {
-        filter: reader.text("log.filter"),
+        filter,
         json: reader.choice("log.format", &["text", "json"]) == Some("json"),
     }
 }
@@ -208,6 +214,25 @@ fn check_exposure(config: &Config, reader: &mut Reader) {
                  or say --allow-anonymous (server.allow_anonymous) to serve everyone",
                 server.bind
             ),
+        );
+    }
+}
+
+fn check_limits(limits: &Limits, reader: &mut Reader) {
+    if limits.bodies_bytes < limits.body_bytes {
+        let detail = format!(
+            "expected at least limits.body_bytes, {}; found {}",
+            limits.body_bytes, limits.bodies_bytes
+        );
+        reader.fault("limits.bodies_bytes", detail);
+    }
+}
+
+fn check_filter(filter: &str, reader: &mut Reader) {
+    if let Err(error) = filter.parse::<tracing_subscriber::EnvFilter>() {
+        reader.fault(
+            "log.filter",
+            format!("expected a level or a filter, found {filter:?}: {error}"),
         );
     }
 }

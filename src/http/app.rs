@@ -4,12 +4,16 @@ use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
 
 use axum::body::Bytes;
+use axum::http::HeaderMap;
 use metrics_exporter_prometheus::PrometheusHandle;
+use tokio::sync::{OwnedSemaphorePermit, Semaphore};
 
+use super::error::{Problem, ProblemCode};
+use super::extract::{check_stated_length, stated_length};
 use super::middleware::rate_limit::RateLimit;
 use super::schema::Schemas;
 use crate::config::Config;
-use crate::service::Predictions;
+use crate::service::{Places, Predictions};
 
 /// Shared by all requests; cheap to clone.
 #[derive(Clone)]
@@ -23,6 +27,8 @@ struct Inner {
     document: Bytes,
     schemas: Schemas,
     predictions: Predictions,
+    reading: Places,
+    body_room: Arc<Semaphore>,
 }
 
 impl App {
@@ -30,6 +36,8 @@ impl App {
     pub fn new(config: Config, document: &utoipa::openapi::OpenApi) -> Self {
         let value = serde_json::to_value(document).expect("the API description is plain data");
         Self(Arc::new(Inner {
+            reading: Places::new(config.runs.parallel, config.server.max_connections),
+            body_room: Arc::new(Semaphore::new(kib(config.limits.bodies_bytes) as usize)),
             predictions: Predictions::new(&config.runs, &config.limits),
             rate_limit: RateLimit::new(config.access.requests_per_minute),
             config,
@@ -75,8 +83,32 @@ impl App {
         &self.0.predictions
     }
 
+    /// Places for reading requests: large ones take a core for a while.
+    pub fn reading(&self) -> &Places {
+        &self.0.reading
+    }
+
+    /// Room in memory for a body of the stated length, or of the largest allowed one; free again when dropped.
+    ///
+    /// # Errors
+    /// 413 when the stated length is above the limit.
+    pub async fn body_room(&self, headers: &HeaderMap) -> Result<OwnedSemaphorePermit, Problem> {
+        let limit = self.config().limits.body_bytes;
+        check_stated_length(headers, limit)?;
+        let bytes = stated_length(headers).unwrap_or(limit as u64);
+        let room = Arc::clone(&self.0.body_room)
+            .acquire_many_owned(kib(bytes as usize))
+            .await;
+        room.map_err(|_| Problem::new(ProblemCode::NotReady, "the service is shutting down"))
+    }
+
     /// The schemas requests are checked against.
     pub fn schemas(&self) -> &Schemas {
         &self.0.schemas
     }
+}
+
+/// Whole KiB, at least one.
+fn kib(bytes: usize) -> u32 {
+    u32::try_from(bytes.div_ceil(1024)).unwrap_or(u32::MAX).max(1)
 }

@@ -53,14 +53,16 @@ pub async fn read_body(headers: &HeaderMap, body: Body, limit: usize) -> Result<
 /// # Errors
 /// 413.
 pub fn check_stated_length(headers: &HeaderMap, limit: usize) -> Result<(), Problem> {
-    let stated = headers
-        .get(header::CONTENT_LENGTH)
-        .and_then(|value| value.to_str().ok()?.parse::<u64>().ok());
-    if stated.is_some_and(|length| length > limit as u64) {
+    if stated_length(headers).is_some_and(|length| length > limit as u64) {
         Err(too_large(limit))
     } else {
         Ok(())
     }
+}
+
+/// The body's length as stated, if it is.
+pub fn stated_length(headers: &HeaderMap) -> Option<u64> {
+    headers.get(header::CONTENT_LENGTH)?.to_str().ok()?.parse().ok()
 }
 
 /// 413 with the limit named.

@@ -44,15 +44,20 @@ impl Predictions {
         }
     }
 
-    /// Runs one order on the blocking threads when a place is free; dropping the future stops the run.
+    /// Runs one order on the blocking threads when a place is free, and `finish` on its report in the same place;
+    /// dropping the future stops the run.
     ///
     /// # Errors
     /// See [`PredictError`].
-    pub async fn run(&self, order: PredictionOrder) -> Result<PredictionReport, PredictError> {
+    pub async fn run<T: Send + 'static>(
+        &self,
+        order: PredictionOrder,
+        finish: impl FnOnce(PredictionReport) -> T + Send + 'static,
+    ) -> Result<T, PredictError> {
         let limits = self.limits.clone();
         metrics::gauge!("predictions_waiting").set(self.places.waiting() as f64);
         self.places
-            .run(move |abandoned| timed(&order, &limits, abandoned))
+            .run(move |abandoned| timed(&order, &limits, abandoned).map(finish))
             .await
     }
 

@@ -135,3 +135,17 @@ fn the_demo_shows_a_year_and_how_to_repeat_it_and_goes_on_serving() {
     let healthy = dipcast(&["healthcheck", "--url", &format!("http://{}", program.address)]);
     assert!(healthy.status.success(), "{}", text(&healthy.stderr));
 }
+
+#[test]
+fn serve_ends_in_ten_seconds_at_sigterm_with_half_a_request_open() {
+    use std::io::Write;
+    let mut program = Program::start(&[]);
+    let mut half = program.connect();
+    half.write_all(
+        b"POST /v1/predictions HTTP/1.1\r\nHost: x\r\nContent-Type: application/json\r\nContent-Length: 100\r\n\r\n{",
+    )
+    .unwrap();
+    let (code, took) = program.terminate();
+    assert_eq!(code, Some(0));
+    assert!(took < std::time::Duration::from_secs(10), "{took:?}");
+}

@@ -3,6 +3,7 @@
 use std::io::{BufRead, BufReader};
 use std::net::TcpStream;
 use std::process::{Child, Command, Stdio};
+use std::time::{Duration, Instant};
 
 /// The program on a port of its own; ended when dropped.
 pub struct Program {
@@ -36,6 +37,17 @@ impl Program {
 
     pub fn connect(&self) -> TcpStream {
         TcpStream::connect(&self.address).unwrap()
+    }
+
+    /// Sends SIGTERM and waits for its end; the exit code and how long it took.
+    pub fn terminate(&mut self) -> (Option<i32>, Duration) {
+        let started = Instant::now();
+        let sent = Command::new("kill")
+            .args(["-TERM", &self.child.id().to_string()])
+            .status()
+            .unwrap();
+        assert!(sent.success());
+        (self.child.wait().unwrap().code(), started.elapsed())
     }
 
     /// What it prints, up to and with a line that starts so.

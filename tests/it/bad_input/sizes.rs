@@ -82,6 +82,35 @@ fn a_zip_bomb_is_refused_without_being_unpacked() {
     assert!(program.peak_mib() < 150, "{} MiB", program.peak_mib());
 }
 
+#[test]
+fn values_without_end_cost_no_memory_without_end() {
+    let program = Program::start(&[]);
+    let values = "1,".repeat(15 << 20);
+    let body = format!("{{\"weather\":{{\"kind\":\"inline\",\"air_temperature_c\":[{values}1]}}}}");
+    let head = format!(
+        "POST /v1/predictions HTTP/1.1\r\nHost: x\r\nConnection: close\r\nContent-Type: application/json\r\nContent-Length: {}\r\n\r\n",
+        body.len()
+    );
+    let answers: Vec<String> = std::thread::scope(|scope| {
+        let send = || {
+            let mut stream = program.connect();
+            stream.write_all(head.as_bytes()).unwrap();
+            stream.write_all(body.as_bytes()).unwrap();
+            answer_of(&mut stream)
+        };
+        let running: Vec<_> = (0..12).map(|_| scope.spawn(send)).collect();
+        running.into_iter().map(|one| one.join().unwrap()).collect()
+    });
+    for text in answers {
+        assert!(
+            text.starts_with("HTTP/1.1 400") && text.contains("more than 4000000 values"),
+            "{text}"
+        );
+    }
+    // Twelve bodies of 30 MiB; their values without a limit would be 12 x 480 MiB.
+    assert!(program.peak_mib() < 1200, "{} MiB", program.peak_mib());
+}
+
 #[tokio::test]
 async fn more_hours_than_are_answered_at_once_name_the_limit() {
     let router = service();

@@ -57,15 +57,19 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 )]
 pub async fn create_prediction(State(app): State<App>, request: Request) -> Result<Response, Problem> {
     let format = negotiate::choose(request.headers(), request.uri().query(), &FORMATS)?;
+    let _room = app.body_room(request.headers()).await?;
     let (text, file) = read(&app, request).await?;
     let upload = file.is_some();
-    let order = order(app.schemas(), &text, file, format)?;
-    let report = app
-        .predictions()
-        .run(order)
+    let told = |error| problem_of(error, upload);
+    let reader = app.clone();
+    let reading = app
+        .reading()
+        .run(move |_| Ok(order(reader.schemas(), &text, file, format)));
+    let order = reading.await.map_err(told)??;
+    app.predictions()
+        .run(order, move |report| respond(report, format, upload))
         .await
-        .map_err(|error| problem_of(error, upload))?;
-    Ok(respond(report, format, upload))
+        .map_err(told)
 }
 
 /// The text of the request and the file beside it, if there is one.
