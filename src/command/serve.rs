@@ -47,6 +47,7 @@ pub(super) fn run(arguments: &Serve) -> Result<(), String> {
 }
 
 async fn serve(config: Config, demo: bool) -> Result<(), String> {
+    let stop = server::stop_signal().map_err(|error| format!("cannot hear the stop signals: {error}"))?;
     let bind = config.server.bind;
     let listener = TcpListener::bind(bind)
         .await
@@ -60,7 +61,7 @@ async fn serve(config: Config, demo: bool) -> Result<(), String> {
             show(address).await
         }
     });
-    server::serve(listener, router, app, server::stop_signal()).await;
+    server::serve(listener, router, app, stop).await;
     shown.abort();
     tracing::info!("stopped");
     Ok(())

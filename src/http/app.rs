@@ -4,12 +4,9 @@ use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
 
 use axum::body::Bytes;
-use axum::http::HeaderMap;
 use metrics_exporter_prometheus::PrometheusHandle;
-use tokio::sync::{OwnedSemaphorePermit, Semaphore};
 
-use super::error::{Problem, ProblemCode};
-use super::extract::{check_stated_length, stated_length};
+use super::body_room::BodyRoom;
 use super::middleware::rate_limit::RateLimit;
 use super::schema::Schemas;
 use crate::config::Config;
@@ -28,7 +25,7 @@ struct Inner {
     schemas: Schemas,
     predictions: Predictions,
     reading: Places,
-    body_room: Arc<Semaphore>,
+    body_room: BodyRoom,
 }
 
 impl App {
@@ -37,7 +34,7 @@ impl App {
         let value = serde_json::to_value(document).expect("the API description is plain data");
         Self(Arc::new(Inner {
             reading: Places::new(config.runs.parallel, config.server.max_connections),
-            body_room: Arc::new(Semaphore::new(kib(config.limits.bodies_bytes) as usize)),
+            body_room: BodyRoom::new(config.limits.bodies_bytes),
             predictions: Predictions::new(&config.runs, &config.limits),
             rate_limit: RateLimit::new(config.access.requests_per_minute),
             config,
@@ -88,27 +85,13 @@ impl App {
         &self.0.reading
     }
 
-    /// Room in memory for a body of the stated length, or of the largest allowed one; free again when dropped.
-    ///
-    /// # Errors
-    /// 413 when the stated length is above the limit.
-    pub async fn body_room(&self, headers: &HeaderMap) -> Result<OwnedSemaphorePermit, Problem> {
-        let limit = self.config().limits.body_bytes;
-        check_stated_length(headers, limit)?;
-        let bytes = stated_length(headers).unwrap_or(limit as u64);
-        let room = Arc::clone(&self.0.body_room)
-            .acquire_many_owned(kib(bytes as usize))
-            .await;
-        room.map_err(|_| Problem::new(ProblemCode::NotReady, "the service is shutting down"))
+    /// Room in memory for request bodies.
+    pub fn body_room(&self) -> &BodyRoom {
+        &self.0.body_room
     }
 
     /// The schemas requests are checked against.
     pub fn schemas(&self) -> &Schemas {
         &self.0.schemas
     }
-}
-
-/// Whole KiB, at least one.
-fn kib(bytes: usize) -> u32 {
-    u32::try_from(bytes.div_ceil(1024)).unwrap_or(u32::MAX).max(1)
 }

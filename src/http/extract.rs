@@ -6,9 +6,13 @@ use http_body_util::{BodyExt, LengthLimitError, Limited};
 use mime::Mime;
 use serde::de::DeserializeOwned;
 
+use super::body_room::{NoRoom, is_caused_by};
 use super::error::{FaultItem, Problem, ProblemCode};
 use super::schema::Schemas;
 use super::strict_json;
+
+/// When a busy service may be asked again [s].
+pub const RETRY_AFTER_BUSY_S: u64 = 5;
 
 /// The request's content type.
 ///
@@ -35,12 +39,13 @@ pub fn content_type(headers: &HeaderMap) -> Result<Mime, Problem> {
 /// Reads a whole body of at most `limit` bytes; a longer stated length is refused before a byte is read.
 ///
 /// # Errors
-/// 413 above the limit, 400 when the body breaks off.
+/// 413 above the limit, 400 when the body breaks off, 503 when there is no room for it.
 pub async fn read_body(headers: &HeaderMap, body: Body, limit: usize) -> Result<Bytes, Problem> {
     check_stated_length(headers, limit)?;
     match Limited::new(body, limit).collect().await {
         Ok(collected) => Ok(collected.to_bytes()),
         Err(error) if error.is::<LengthLimitError>() => Err(too_large(limit)),
+        Err(error) if is_caused_by::<NoRoom>(error.as_ref()) => Err(no_room()),
         Err(_) => Err(Problem::new(
             ProblemCode::BadRequest,
             "the body broke off before its end",
@@ -63,6 +68,12 @@ pub fn check_stated_length(headers: &HeaderMap, limit: usize) -> Result<(), Prob
 /// The body's length as stated, if it is.
 pub fn stated_length(headers: &HeaderMap) -> Option<u64> {
     headers.get(header::CONTENT_LENGTH)?.to_str().ok()?.parse().ok()
+}
+
+/// 503 while the memory for bodies is taken.
+pub fn no_room() -> Problem {
+    let detail = "the memory for request bodies is taken by others; send the same request again";
+    Problem::new(ProblemCode::Busy, detail).retry_after(RETRY_AFTER_BUSY_S)
 }
 
 /// 413 with the limit named.

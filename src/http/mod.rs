@@ -4,6 +4,8 @@
 
 /// What the handlers share.
 pub mod app;
+/// Room in memory for request bodies.
+pub mod body_room;
 /// The one way a request fails: problem documents.
 pub mod error;
 /// Strict reading of requests.

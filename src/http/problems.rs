@@ -234,7 +234,7 @@ pub static KINDS: [ProblemKind; 19] = [
         StatusCode::SERVICE_UNAVAILABLE,
         "All places are taken",
         [
-            "As many predictions are running and waiting as this service allows.",
+            "As many predictions are running and waiting, or as many bodies are in memory, as this service allows.",
             "Hundreds of long predictions at once.",
             "Send the same request again after the seconds in Retry-After.",
         ],

@@ -168,31 +168,29 @@ async fn keep_up(app: App) {
     }
 }
 
-/// Ready at SIGTERM or SIGINT.
-pub async fn stop_signal() {
-    let interrupted = async {
-        if tokio::signal::ctrl_c().await.is_err() {
-            std::future::pending::<()>().await;
-        }
-    };
-    tokio::select! {
-        () = interrupted => {}
-        () = terminated() => {}
-    }
-}
-
+/// Ready at SIGTERM or SIGINT; both are heard from this call on, before the future is first polled.
+///
+/// # Errors
+/// The system's own, where a signal cannot be heard.
 #[cfg(unix)]
-async fn terminated() {
+pub fn stop_signal() -> std::io::Result<impl Future<Output = ()>> {
     use tokio::signal::unix::{SignalKind, signal};
-    match signal(SignalKind::terminate()) {
-        Ok(mut stream) => {
-            stream.recv().await;
+    let (mut terminated, mut interrupted) = (signal(SignalKind::terminate())?, signal(SignalKind::interrupt())?);
+    Ok(async move {
+        tokio::select! {
+            _ = terminated.recv() => {}
+            _ = interrupted.recv() => {}
         }
-        Err(_) => std::future::pending().await,
-    }
+    })
 }
 
+/// Ready at Ctrl-C.
+///
+/// # Errors
+/// None here.
 #[cfg(not(unix))]
-async fn terminated() {
-    std::future::pending().await
+pub fn stop_signal() -> std::io::Result<impl Future<Output = ()>> {
+    Ok(async {
+        let _ = tokio::signal::ctrl_c().await;
+    })
 }

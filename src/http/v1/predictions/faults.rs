@@ -1,12 +1,10 @@
 //! The one mapping from what the service says to what a caller is told.
 
 use crate::http::error::{FaultItem, INTERNAL_DETAIL, Problem, ProblemCode};
+use crate::http::extract::RETRY_AFTER_BUSY_S;
 use crate::http::v1::weather::inline_name;
 use crate::service::records::{Fault, WeatherFault};
 use crate::service::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
-
-/// When a busy service may be asked again [s].
-const RETRY_AFTER_BUSY_S: u64 = 5;
 
 /// The problem of a prediction that was not made; `upload` says whether the readings came in a file.
 pub fn problem_of(error: PredictError, upload: bool) -> Problem {

@@ -7,8 +7,9 @@ use bytes::Bytes;
 use utoipa::ToSchema;
 
 use super::PredictionRequest;
+use crate::http::body_room::{NoRoom, is_caused_by};
 use crate::http::error::{FaultItem, Problem, ProblemCode};
-use crate::http::extract::{check_stated_length, too_large};
+use crate::http::extract::{check_stated_length, no_room, too_large};
 
 /// The request and the file beside it.
 #[derive(serde::Deserialize, ToSchema)]
@@ -89,6 +90,9 @@ impl Parts {
 fn broken(error: &MultipartError, limit: usize) -> Problem {
     if error.status() == StatusCode::PAYLOAD_TOO_LARGE {
         return too_large(limit);
+    }
+    if is_caused_by::<NoRoom>(error) {
+        return no_room();
     }
     Problem::new(
         ProblemCode::InvalidMultipart,

@@ -57,7 +57,7 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 )]
 pub async fn create_prediction(State(app): State<App>, request: Request) -> Result<Response, Problem> {
     let format = negotiate::choose(request.headers(), request.uri().query(), &FORMATS)?;
-    let _room = app.body_room(request.headers()).await?;
+    let (request, _room) = app.body_room().meter(request);
     let (text, file) = read(&app, request).await?;
     let upload = file.is_some();
     let told = |error| problem_of(error, upload);
