@@ -47,7 +47,7 @@ everything() {
     step "tools" install_tools
     step "format" cargo fmt --check
     step "lints" cargo clippy --quiet --locked --all-targets -- -D warnings
-    step "shell scripts" "$venv/bin/shellcheck" --external-sources tests/run.sh .ci/run
+    step "shell scripts" "$venv/bin/shellcheck" --external-sources tests/run.sh tests/benches/instructions.sh .ci/run
     step "unit, integration and reference tests" cargo nextest run --profile ci --locked
     step "examples in the docs" cargo test --quiet --locked --doc
     step "release build" release_build
