@@ -142,3 +142,45 @@ fn a_year_has_its_months_in_the_zone_asked_for() {
     };
     assert_eq!((hours_of("2013-03-10"), hours_of("2013-11-03")), (23.0, 25.0));
 }
+
+/// Every real series of this folder, from the file to a sane answer: time adds up, water follows cycles, causes fit the climate.
+#[test]
+fn every_climate_gets_an_answer_that_fits_it() {
+    let totals = |file: &str, layout: &str, elevation_m: f64| {
+        let totals = run(&shelf(), &series(file, layout, elevation_m), plain())
+            .unwrap()
+            .summary
+            .totals;
+        let stalled = &totals.stall_hours;
+        assert!(stalled.total + stalled.unknown < totals.hours, "{file}: {totals:?}");
+        // A cycle of this device costs the felt a few milligrams at most.
+        let mg_per_cycle = 1e3 * totals.water_g.head / totals.cycles;
+        assert!((2.0..8.0).contains(&mg_per_cycle), "{file}: {mg_per_cycle} mg a cycle");
+        totals
+    };
+    let miami = totals("miami_typical_year.csv", "miami.json", 2.0);
+    let alaska = totals("sand_point_typical_year.csv", "sand_point.json", 7.0);
+    let lincoln = totals("lincoln_2023_jan_feb.csv", "lincoln.json", 362.7);
+    let house = totals("belgian_house_2016.csv", "belgian_outdoors.json", 50.0);
+
+    assert_eq!(miami.stall_hours.frozen, 0.0);
+    assert!(
+        miami.stall_hours.humid < 0.1 * miami.hours,
+        "warm air holds the difference: {miami:?}"
+    );
+    assert!(
+        alaska.stall_hours.humid > 0.2 * alaska.hours,
+        "cold and damp all year: {alaska:?}"
+    );
+    assert!(
+        lincoln.stall_hours.frozen > 0.5 * lincoln.hours,
+        "a prairie winter: {lincoln:?}"
+    );
+    assert!(
+        lincoln.needs_person_hours > 0.0,
+        "felts dry out in weeks of frost: {lincoln:?}"
+    );
+    let pace = |t: &Totals| t.cycles / t.hours;
+    let order = [pace(&miami), pace(&house), pace(&alaska), pace(&lincoln)];
+    assert!(order.windows(2).all(|pair| pair[0] > pair[1]), "{order:?}");
+}
