@@ -64,7 +64,7 @@ fn unknown(name: &str) -> Option<WeatherFault> {
         likeness(a).total_cmp(&likeness(b))
     });
     let hint = nearest.filter(|own| strsim::jaro_winkler(own, name) > 0.8);
-    let hint = hint.map_or(String::new(), |own| format!("; did you mean {own}?"));
+    let hint = hint.map_or(".".to_string(), |own| format!("; did you mean {own}?"));
     let detail = format!(
         "the column is not part of the documented form{hint} {}",
         capitalised(REMEDY)

@@ -180,7 +180,7 @@ impl Header {
         let nearest = self.names.iter().max_by(|a, b| likeness(a).total_cmp(&likeness(b)));
         let hint = nearest
             .filter(|given| likeness(given) > 0.8)
-            .map_or(String::new(), |given| format!("; did you mean {given:?}?"));
+            .map_or(".".to_string(), |given| format!("; did you mean {given:?}?"));
         let listed: Vec<String> = self.names.iter().take(30).map(|name| quoted(name.as_bytes())).collect();
         let single = if self.names.len() == 1 {
             ". Only one column: is another delimiter used?"
