@@ -4,7 +4,7 @@ use super::super::engine::Engine;
 use super::super::sides::{HeadSide, body_gain_w};
 use super::super::stall::{TipBalance, root, tip_balance, tip_driving_w};
 use super::local::{Local, Start};
-use super::march::{Cycle, march};
+use super::march::{Cycle, Pace, march};
 
 /// Relative closure asked of every averaged cycle: heat in against heat out.
 const CLOSURE: f64 = 1e-9;
@@ -169,13 +169,21 @@ fn ceiling_k(local: &Local, guess_k: f64, start: Start) -> f64 {
 
 /// Bracketed secant on the mean power imbalance. Too cold a body starves; above the ceiling the air gives it nothing more.
 fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
-    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k(local, guess_k, start));
+    let ceiling_k = ceiling_k(local, guess_k, start);
+    let (mut low_k, mut high_k) = (f64::NEG_INFINITY, ceiling_k);
+    let mut pace = Pace::Quick;
     let mut body_k = guess_k.min(high_k - 1e-3);
     let mut older: Option<(f64, f64)> = None;
     let mut slope_share = start.slope_share;
     for _ in 0..80 {
-        let Ok(cycle) = march(local, body_k) else {
-            if low_k == f64::NEG_INFINITY && march(local, high_k).is_err() || high_k - body_k < 1e-9 {
+        let Ok(cycle) = march(local, body_k, pace) else {
+            if pace == Pace::Quick {
+                // Starved by what it took for granted, perhaps: the same again with nothing taken.
+                (pace, low_k, high_k) = (Pace::Careful, f64::NEG_INFINITY, ceiling_k);
+                (older, slope_share) = (None, 1.0);
+                continue;
+            }
+            if low_k == f64::NEG_INFINITY && march(local, high_k, pace).is_err() || high_k - body_k < 1e-9 {
                 return None;
             }
             (low_k, older) = (body_k, None);
@@ -199,7 +207,7 @@ fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
         let smooth = local.gain_w.slope(body_k) - local.heat_w.slope(body_k - start.mean_difference_k);
         if let Some((k, w)) = older {
             let share = (surplus_w - w) / (body_k - k) / smooth;
-            slope_share = if share > 0.05 && share < 20.0 {
+            slope_share = if share > 1e-3 && share < 1e3 {
                 share
             } else {
                 slope_share

@@ -7,6 +7,15 @@ use super::local::Local;
 const TUBE_STEPS: usize = 2;
 const HEAD_STEPS: usize = 4;
 
+/// How the body temperature at the end of a step is found.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(super) enum Pace {
+    /// Taken as expected on the way to the tip: good to a quarter of a percent, and starved early near the stall.
+    Quick,
+    /// Solved for in every step: true to the stall, at forty times the price.
+    Careful,
+}
+
 /// What one cycle brought.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub(super) struct Cycle {
@@ -55,10 +64,10 @@ struct Point {
 }
 
 /// Marches one cycle from the tip with the body at `body_k` to the next tip.
-pub(super) fn march(local: &Local, body_k: f64) -> Result<Cycle, Starved> {
+pub(super) fn march(local: &Local, body_k: f64, pace: Pace) -> Result<Cycle, Starved> {
     let mut cycle = Cycle::default();
     cycle.after_dip = through_the_dip(local, body_k, &mut cycle);
-    climb(local, cycle.after_dip, body_k, &mut cycle)?;
+    climb(local, cycle.after_dip, body_k, pace, &mut cycle)?;
     Ok(cycle)
 }
 
@@ -98,26 +107,31 @@ fn dip(local: &Local, from: Nodes, cycle: &mut Cycle) -> Nodes {
 }
 
 /// From the nodes after a dip to the tip, where the body is expected at `tip_body_k`.
-fn climb(local: &Local, from: Nodes, tip_body_k: f64, cycle: &mut Cycle) -> Result<(), Starved> {
+fn climb(local: &Local, from: Nodes, tip_body_k: f64, pace: Pace, cycle: &mut Cycle) -> Result<(), Starved> {
     let (tube_m3, tip_m3) = (local.engine.tube_m3(), local.engine.device.tip_volume_m3);
     let start_x_k = from.body_k - from.head_k;
     let mut here = point(local, from.lifted_m3, from.body_k, start_x_k)?;
+    let mut panel = |here: Point, to_m3: f64| {
+        let step = match pace {
+            Pace::Quick => step(local, here, to_m3, expected_k(here, to_m3, [tip_m3, tip_body_k]))?,
+            Pace::Careful => fitting_step(local, here, to_m3)?,
+        };
+        book(local, here, &step, cycle);
+        Ok(Point {
+            body_k: step.body_k,
+            ..step.there
+        })
+    };
     if from.lifted_m3 < tube_m3.min(tip_m3) {
         let (start_m3, width_m3) = (from.lifted_m3, tube_m3.min(tip_m3) - from.lifted_m3);
         for i in 1..=TUBE_STEPS {
-            here = panel(
-                local,
-                here,
-                start_m3 + width_m3 * i as f64 / TUBE_STEPS as f64,
-                tip_body_k,
-                cycle,
-            )?;
+            here = panel(here, start_m3 + width_m3 * i as f64 / TUBE_STEPS as f64)?;
         }
     }
     if here.lifted_m3 < tip_m3 {
         let (start_m3, width_m3) = (here.lifted_m3, tip_m3 - here.lifted_m3);
         for i in 1..=HEAD_STEPS {
-            here = panel(local, here, start_m3 + width_m3 * crowded(i), tip_body_k, cycle)?;
+            here = panel(here, start_m3 + width_m3 * crowded(i))?;
         }
     }
     cycle.tip_driving_w = here.driving_w;
@@ -144,28 +158,90 @@ fn point(local: &Local, lifted_m3: f64, body_k: f64, x_k: f64) -> Result<Point, 
     }
 }
 
-/// One step of the climb. Between its ends the driving power is taken linear in the heat moved, which makes the
-/// time a logarithm: exact for a straight tube and heat linear in temperature, and well behaved up to the stall.
-fn panel(local: &Local, here: Point, to_m3: f64, tip_body_k: f64, cycle: &mut Cycle) -> Result<Point, Starved> {
+/// One step of the climb.
+struct Step {
+    there: Point,
+    duration_s: f64,
+    /// Heat moved from body to head [J].
+    heat_j: f64,
+    conducted_w: f64,
+    gained_w: f64,
+    /// Body temperature that the heat leaves at the end [K].
+    body_k: f64,
+}
+
+/// A step with the body at `body_k` at its end. Between the ends the driving power is taken linear in the heat moved,
+/// which makes the time a logarithm: exact for a straight tube and heat linear in temperature, and well behaved up to the
+/// stall.
+fn step(local: &Local, here: Point, to_m3: f64, body_k: f64) -> Result<Step, Starved> {
     let engine = &local.engine;
     let middle_m3 = 0.5 * (here.lifted_m3 + to_m3);
     let (head_j_k, body_j_k) = (engine.head_j_k(middle_m3), engine.body_j_k(middle_m3));
     let (ratio, risen_m3) = (head_j_k / body_j_k, to_m3 - here.lifted_m3);
     let entered_j_k = engine.head_j_k(to_m3) - engine.head_j_k(here.lifted_m3);
-    let conduction = engine.device.conduction_w_k;
-    let left_m3 = engine.device.tip_volume_m3 - here.lifted_m3;
-    let mut body_k = here.body_k + (tip_body_k - here.body_k) * risen_m3 / left_m3;
-    let (mut duration_s, mut heat_j, mut conducted_w, mut gained_w, mut there) = (0.0, 0.0, 0.0, 0.0, here);
-    for _ in 0..1 {
-        there = point(local, to_m3, body_k, local.holding_k(to_m3, body_k))?;
-        let mean_x_k = 0.5 * (here.x_k + there.x_k);
-        heat_j =
-            engine.latent_j_m3 * (1.0 + ratio) * risen_m3 + entered_j_k * mean_x_k + head_j_k * (there.x_k - here.x_k);
-        duration_s = heat_j / log_mean(here.driving_w, there.driving_w);
-        conducted_w = conduction * mean_x_k;
-        gained_w = local.gain_w.at(0.5 * (here.body_k + there.body_k));
-        body_k = here.body_k + ((gained_w - conducted_w) * duration_s - engine.latent_j_m3 * risen_m3) / body_j_k;
+    let there = point(local, to_m3, body_k, local.holding_k(to_m3, body_k))?;
+    let mean_x_k = 0.5 * (here.x_k + there.x_k);
+    let heat_j =
+        engine.latent_j_m3 * (1.0 + ratio) * risen_m3 + entered_j_k * mean_x_k + head_j_k * (there.x_k - here.x_k);
+    let duration_s = heat_j / log_mean(here.driving_w, there.driving_w);
+    let conducted_w = engine.device.conduction_w_k * mean_x_k;
+    let gained_w = local.gain_w.at(0.5 * (here.body_k + body_k));
+    let warmed_j = (gained_w - conducted_w) * duration_s - engine.latent_j_m3 * risen_m3;
+    Ok(Step {
+        there,
+        duration_s,
+        heat_j,
+        conducted_w,
+        gained_w,
+        body_k: here.body_k + warmed_j / body_j_k,
+    })
+}
+
+/// The step whose end fits its own body temperature. A warmer body drives harder and has less time to warm up, so there
+/// is one at most; where even the warmest is starved there is none.
+fn fitting_step(local: &Local, here: Point, to_m3: f64) -> Result<Step, Starved> {
+    let (mut low_k, mut high_k) = (here.body_k - 1.0, here.body_k + 4.0);
+    // Starved counts as far too cold; beside that the Illinois variant of regula falsi.
+    let (mut over_low_k, mut over_high_k, mut side) = (1.0, -1.0, 0);
+    for _ in 0..60 {
+        let middle_k = low_k + (high_k - low_k) * over_low_k / (over_low_k - over_high_k);
+        let over_k = step(local, here, to_m3, middle_k).map_or(1.0, |step| (step.body_k - middle_k).min(1.0));
+        if over_k > 0.0 {
+            over_high_k *= if side == 1 { 0.5 } else { 1.0 };
+            (low_k, over_low_k, side) = (middle_k, over_k, 1);
+        } else {
+            over_low_k *= if side == -1 { 0.5 } else { 1.0 };
+            (high_k, over_high_k, side) = (middle_k, over_k, -1);
+        }
+        if over_k.abs() < 1e-12 || high_k - low_k < 3e-13 {
+            break;
+        }
     }
+    let found = step(local, here, to_m3, high_k)?;
+    if (found.body_k - high_k).abs() < 1e-3 {
+        Ok(found)
+    } else {
+        Err(Starved(0.0))
+    }
+}
+
+/// Body temperature on the straight line over volume to the one at the tip [K].
+fn expected_k(here: Point, to_m3: f64, [tip_m3, tip_body_k]: [f64; 2]) -> f64 {
+    here.body_k + (tip_body_k - here.body_k) * (to_m3 - here.lifted_m3) / (tip_m3 - here.lifted_m3)
+}
+
+/// Books a step.
+fn book(local: &Local, here: Point, step: &Step, cycle: &mut Cycle) {
+    let Step {
+        there,
+        duration_s,
+        heat_j,
+        conducted_w,
+        gained_w,
+        ..
+    } = *step;
+    let middle_m3 = 0.5 * (here.lifted_m3 + there.lifted_m3);
+    let ratio = local.engine.head_j_k(middle_m3) / local.engine.body_j_k(middle_m3);
     let taken_j = heat_j + duration_s * (conducted_w - ratio * (gained_w - conducted_w));
     cycle.period_s += duration_s;
     cycle.climb_s += duration_s;
@@ -180,7 +256,6 @@ fn panel(local: &Local, here: Point, to_m3: f64, tip_body_k: f64, cycle: &mut Cy
         duration_s,
         cycle,
     );
-    Ok(Point { body_k, ..there })
 }
 
 fn add_losses(local: &Local, head_k: f64, duration_s: f64, cycle: &mut Cycle) {
