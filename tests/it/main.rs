@@ -6,7 +6,9 @@
     reason = "tests explain themselves by name and may fail loudly"
 )]
 
+mod agreement;
 mod device;
+mod facts;
 mod bad_csv;
 mod bad_input;
 mod command;

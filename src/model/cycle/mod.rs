@@ -4,6 +4,8 @@
 //! changing air, [`Method::Resolved`] integrates every cycle event by event. The tests hold one against the other.
 
 mod averaged;
+#[cfg(test)]
+mod checks;
 mod cup;
 mod engine;
 mod ledger;

@@ -224,3 +224,40 @@ fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
     }
     None
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::model::air::Air;
+    use crate::model::cycle::{Forcing, State, Tuning};
+    use crate::model::device::{check, examples};
+
+    /// Heat in and heat out of every averaged cycle agree to 1e-9 of what passes.
+    #[test]
+    fn every_averaged_cycle_closes() {
+        let mut closed_cycles = 0;
+        for example in examples() {
+            let device = check(&example.definition).expect("an example is sound").device;
+            for (celsius, humidity) in [(10.0, 0.3), (22.0, 0.5), (22.0, 0.85), (30.0, 0.2), (35.0, 0.7)] {
+                let air = Air::from_relative_humidity(celsius + 273.15, humidity, 101_325.0);
+                let (forcing, tuning) = (Forcing::still(air, 0.1), Tuning::default());
+                let felt = State::settled(&device, &tuning, &forcing).felt;
+                let head = HeadSide {
+                    device: &device,
+                    tuning: &tuning,
+                    forcing: &forcing,
+                    felt,
+                    wetness: 1.0,
+                    clean_share: 1.0,
+                    iced: false,
+                };
+                if let Balance::Cycling { closed, .. } = balance(&head, None) {
+                    let (gained_j, taken_j) = (closed.cycle.body_heat_j, closed.cycle.head_heat_j);
+                    assert!((gained_j - taken_j).abs() <= 1e-9 * (gained_j.abs() + taken_j.abs()));
+                    closed_cycles += 1;
+                }
+            }
+        }
+        assert!(closed_cycles > 15, "{closed_cycles}");
+    }
+}

@@ -7,8 +7,8 @@ use super::super::types::{HourForcing, State};
 use super::integrate::{Vector, dormand_prince};
 
 /// Error allowed in a step: temperature [K] and share of the tip volume.
-const TEMPERATURE_ERROR_K: f64 = 3e-7;
-const VOLUME_ERROR_SHARE: f64 = 3e-7;
+const TEMPERATURE_ERROR_K: f64 = 3e-9;
+const VOLUME_ERROR_SHARE: f64 = 3e-9;
 
 /// What holds between dips.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]

@@ -4,4 +4,6 @@ mod climb;
 mod integrate;
 mod stretch;
 
+#[cfg(test)]
+pub(super) use stretch::{HeatBook, run};
 pub(super) use stretch::{advance, trace};

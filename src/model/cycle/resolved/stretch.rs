@@ -26,6 +26,9 @@ struct Run<'a> {
     heat: HeatBook,
     out: Stretch,
     trace: Option<Vec<TracePoint>>,
+    /// Body temperature at which the fluid's density and latent heat are taken throughout [K]: changing them on the way
+    /// would move the head's temperature without heat.
+    properties_k: f64,
 }
 
 /// Carries a state from `from_s` to `to_s` of an hour, or to the second a visit falls due.
@@ -54,14 +57,7 @@ pub(in crate::model::cycle) fn run(
         end_s: start_s,
         ..Stretch::default()
     };
-    let mut run = Run {
-        plant,
-        hour,
-        fineness,
-        heat: HeatBook::default(),
-        out,
-        trace: None,
-    };
+    let mut run = Run::start(plant, hour, state, out, fineness);
     state.ahead_s = (from_s + state.ahead_s - to_s).max(0.0);
     while run.out.end_s < to_s - 1e-9 {
         let was_due = is_due(plant.device, state);
@@ -80,6 +76,32 @@ pub(in crate::model::cycle) fn run(
 }
 
 impl<'a> Run<'a> {
+    /// Takes the fluid's properties for the hour, and the volume that the temperatures at hand hold with them.
+    fn start(plant: Plant<'a>, hour: &'a HourForcing, state: &mut State, out: Stretch, fineness: f64) -> Self {
+        let properties_k = state.body_temp_k;
+        let run = Run {
+            plant,
+            hour,
+            fineness,
+            heat: HeatBook::default(),
+            out,
+            trace: None,
+            properties_k,
+        };
+        if state.lifted_m3 > 0.0 {
+            let held_m3 = run
+                .engine(state)
+                .held_m3(state.body_temp_k - state.head_temp_k, state.body_temp_k);
+            // Just short of the tip at most: it lets go when it gets there, not when it stands there.
+            state.lifted_m3 = held_m3.min(plant.device.tip_volume_m3 * (1.0 - 1e-9));
+        }
+        run
+    }
+
+    fn engine(&self, state: &State) -> Engine<'a> {
+        Engine::at(self.plant.device, &state.felt, self.properties_k)
+    }
+
     /// One step, or one piece of standing still.
     fn next(&mut self, state: &mut State, to_s: f64) {
         let forcing = self.hour.at(self.out.end_s);
@@ -113,7 +135,7 @@ impl<'a> Run<'a> {
 
     /// Puts the volume where hydrostatics wants it for the temperatures at hand.
     fn settle(&self, state: &mut State) {
-        let engine = Engine::at(self.plant.device, &state.felt, state.body_temp_k);
+        let engine = self.engine(state);
         let from = Nodes {
             head_k: state.head_temp_k,
             body_k: state.body_temp_k,
@@ -155,7 +177,7 @@ impl<'a> Run<'a> {
     fn between(&self, state: &State, phase: Phase, fixed_m3: f64) -> Between<'a> {
         Between {
             plant: self.plant,
-            engine: Engine::at(self.plant.device, &state.felt, state.body_temp_k),
+            engine: self.engine(state),
             state: *state,
             hour: self.hour,
             phase,
@@ -208,7 +230,7 @@ impl<'a> Run<'a> {
     /// Lets go: drain, reset, the time of the dip, drinking, and the rise that follows at once.
     fn dip(&mut self, state: &mut State) {
         let device = self.plant.device;
-        let engine = Engine::at(device, &state.felt, state.body_temp_k);
+        let engine = self.engine(state);
         let drained = engine.after_drain_and_reset(state.head_temp_k, state.body_temp_k);
         let stored_before = engine.stored_j(device.tip_volume_m3, state.head_temp_k, state.body_temp_k);
         self.heat.stored_j += engine.stored_j(drained.lifted_m3, drained.head_k, drained.body_k) - stored_before;
@@ -264,14 +286,7 @@ pub(in crate::model::cycle) fn trace(plant: Plant, state: &State, forcing: &Forc
     let mut state = *state;
     state.ahead_s = 0.0;
     let out = Stretch::default();
-    let mut run = Run {
-        plant,
-        hour: &hour,
-        fineness: 1.0,
-        heat: HeatBook::default(),
-        out,
-        trace: None,
-    };
+    let mut run = Run::start(plant, &hour, &mut state, out, 1.0);
     let mut last_dip_s = 0.0;
     let mut dips = 0.0;
     while run.out.end_s < 4.0 * 3600.0 {
