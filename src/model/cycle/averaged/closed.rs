@@ -167,6 +167,15 @@ fn ceiling_k(local: &Local, guess_k: f64, start: Start) -> f64 {
     }
 }
 
+/// What the last two tries say of the slope over what the smooth curves give; the former share where they say nothing.
+fn learned_share(former: f64, smooth: f64, older: Option<(f64, f64)>, newer: (f64, f64)) -> f64 {
+    let Some((body_k, surplus_w)) = older else {
+        return former;
+    };
+    let share = (newer.1 - surplus_w) / (newer.0 - body_k) / smooth;
+    if share > 1e-3 && share < 1e3 { share } else { former }
+}
+
 /// Bracketed secant on the mean power imbalance. Too cold a body starves; above the ceiling the air gives it nothing more.
 fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
     let ceiling_k = ceiling_k(local, guess_k, start);
@@ -205,14 +214,7 @@ fn close(local: &Local, guess_k: f64, start: Start) -> Option<Closed> {
             high_k = body_k
         }
         let smooth = local.gain_w.slope(body_k) - local.heat_w.slope(body_k - start.mean_difference_k);
-        if let Some((k, w)) = older {
-            let share = (surplus_w - w) / (body_k - k) / smooth;
-            slope_share = if share > 1e-3 && share < 1e3 {
-                share
-            } else {
-                slope_share
-            };
-        }
+        slope_share = learned_share(slope_share, smooth, older, (body_k, surplus_w));
         older = Some((body_k, surplus_w));
         let next_k = body_k - surplus_w / (slope_share * smooth);
         let inside = next_k > low_k && next_k < high_k;
