@@ -2,6 +2,27 @@
 //!
 //! Two ways lead to the same answer and share only the formulas: [`Method::Averaged`] takes the periodic cycle in slowly
 //! changing air, [`Method::Resolved`] integrates every cycle event by event. The tests hold one against the other.
+//!
+//! # How far the two ways agree
+//!
+//! Period of the averaged less that of the resolved cycle, in percent, for the shelf example with half of the difference
+//! closed in a dip. A dash: it stands still, or stalls within two points of humidity.
+//!
+//! | air | 20 % RH | 40 % | 60 % | 80 % | 90 % |
+//! |---|---|---|---|---|---|
+//! | 15 °C, 0 m/s | +0.16 | +0.14 | +0.15 | +0.12 | - |
+//! | 15 °C, 0.1 m/s | +0.19 | +0.21 | +0.24 | +0.24 | - |
+//! | 15 °C, 0.5 m/s | +0.17 | +0.20 | +0.23 | +0.25 | - |
+//! | 25 °C, 0 m/s | +0.18 | +0.18 | +0.14 | +0.09 | -0.06 |
+//! | 25 °C, 0.1 m/s | +0.18 | +0.20 | +0.23 | +0.26 | +0.20 |
+//! | 25 °C, 0.5 m/s | +0.15 | +0.18 | +0.21 | +0.26 | +0.22 |
+//! | 35 °C, 0 m/s | +0.17 | +0.18 | +0.17 | +0.02 | -0.14 |
+//! | 35 °C, 0.1 m/s | +0.16 | +0.18 | +0.21 | +0.23 | +0.19 |
+//! | 35 °C, 0.5 m/s | +0.12 | +0.15 | +0.19 | +0.23 | +0.21 |
+//!
+//! Over the same air, root mean square at half closed, and worst with nothing, half or all closed: shelf 0.19; 0.23, 0.26,
+//! 0.94. Window 0.20; 0.39, 1.04, 1.24. Foyer 0.37; 1.09, 1.52, 0.98. The larger ones stand in still air, where the head
+//! passes the temperature at which cooling sinks and vapour lifts the air equally and the coefficient has a cusp.
 
 mod averaged;
 #[cfg(test)]
