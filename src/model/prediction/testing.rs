@@ -20,6 +20,7 @@ pub(super) fn series(temps_k: &[f64], rh_fraction: f64) -> HourlySeries {
         pressure_pa: vec![101_325.0; temps_k.len()],
         wind_speed_m_s: None,
         shortwave_w_m2: None,
+        shortwave_stamp: Stamp::Instant,
         known: vec![true; temps_k.len()],
         report: SeriesReport::default(),
         assumptions: Vec::new(),

@@ -49,23 +49,27 @@ impl Grid {
 
     /// Mean of the readings of each hour, NaN where there is none. Missing readings are left out of the mean.
     pub(super) fn means(&self, values: &[f64]) -> Vec<f64> {
-        let mut means = vec![f64::NAN; self.hours];
-        let mut at = 0;
-        while at < values.len() {
-            let hour = self.hour_of[at];
-            let (mut sum, mut count) = (0.0, 0u32);
-            while at < values.len() && self.hour_of[at] == hour {
-                if !values[at].is_nan() {
-                    sum += values[at];
-                    count += 1;
-                }
-                at += 1;
-            }
-            if count > 0 {
-                means[hour as usize] = sum / f64::from(count);
+        self.means_of(self.hour_of.iter().map(|hour| i64::from(*hour)), values)
+    }
+
+    /// The same for values that are labelled in their own way; those of hours outside the grid are left out.
+    pub(super) fn means_labelled(&self, label: Label, time_unix_s: &[i64], values: &[f64]) -> Vec<f64> {
+        let hour_of = time_unix_s
+            .iter()
+            .map(|time| hour_number(time - self.start_unix_s, label));
+        self.means_of(hour_of, values)
+    }
+
+    fn means_of(&self, hour_of: impl Iterator<Item = i64>, values: &[f64]) -> Vec<f64> {
+        let mut sums = vec![(0.0, 0u32); self.hours];
+        for (hour, value) in hour_of.zip(values).filter(|(_, value)| !value.is_nan()) {
+            if let Some((sum, count)) = usize::try_from(hour).ok().and_then(|hour| sums.get_mut(hour)) {
+                *sum += value;
+                *count += 1;
             }
         }
-        means
+        let mean = |(sum, count)| if count > 0 { sum / f64::from(count) } else { f64::NAN };
+        sums.into_iter().map(mean).collect()
     }
 
     /// Hours that hold several readings.
@@ -209,6 +213,15 @@ mod tests {
         let grid = Grid::lay(&raw, 100).unwrap();
         assert_eq!((grid.start_unix_s, grid.hours), (0, 24));
         assert_eq!(grid.hour_of, [0, 1, 23]);
+    }
+
+    #[test]
+    fn a_column_may_be_labelled_in_its_own_way() {
+        let raw = readings(Label::Instant, &[0, 60, 120]);
+        let grid = Grid::lay(&raw, 100).unwrap();
+        let ends = grid.means_labelled(Label::MeanOfPrecedingHour, &raw.time_unix_s, &[1.0, 2.0, 3.0]);
+        assert_eq!(ends[..2], [2.0, 3.0]);
+        assert!(ends[2].is_nan());
     }
 
     #[test]

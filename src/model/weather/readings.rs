@@ -57,6 +57,8 @@ pub struct RawReadings {
     pub wind_speed_m_s: Option<Vec<f64>>,
     /// Short-wave irradiance [W/m2].
     pub shortwave_w_m2: Option<Vec<f64>>,
+    /// What the times say about the irradiance, where that differs from the rest.
+    pub shortwave_label: Option<Label>,
     /// Oddities met while reading (times, for example).
     pub flags: Vec<Flag>,
     /// Assumptions made while reading.

@@ -6,7 +6,7 @@ use super::humidity::vapour_pressures;
 use super::options::RegulariseOptions;
 use super::order::{check_repeats, sort_by_time};
 use super::pressure::{HourlyPressure, Said, of_station};
-use super::readings::{RawReadings, WeatherFault};
+use super::readings::{Label, RawReadings, WeatherFault};
 use super::sanity::{check_unknown, shape_faults, time_faults};
 use super::screen::{flag_spikes, flag_stuck, screen};
 use super::series::{Flag, HourlySeries, SeriesReport, Sightings};
@@ -82,16 +82,18 @@ fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeri
         flags: std::mem::take(&mut raw.flags),
     };
     check_unknown(&report, grid.hours, options)?;
-    let outdoor = |column: &Option<Vec<f64>>| {
-        let mut values = grid.means(column.as_deref()?);
+    let outdoor = |column: &Option<Vec<f64>>, label: Label| {
+        let mut values = grid.means_labelled(label, &raw.time_unix_s, column.as_deref()?);
         fill(&mut values, options.max_gap_hours);
         Some(values)
     };
+    let shortwave_label = raw.shortwave_label.unwrap_or(raw.label);
     Ok(HourlySeries {
         start_unix_s: grid.start_unix_s,
         stamp: raw.label.stamp(),
-        wind_speed_m_s: outdoor(&raw.wind_speed_m_s),
-        shortwave_w_m2: outdoor(&raw.shortwave_w_m2),
+        wind_speed_m_s: outdoor(&raw.wind_speed_m_s, raw.label),
+        shortwave_w_m2: outdoor(&raw.shortwave_w_m2, shortwave_label),
+        shortwave_stamp: shortwave_label.stamp(),
         temp_k: air.temp_k,
         vapour_pressure_pa: air.vapour_pa,
         pressure_pa,

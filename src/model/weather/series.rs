@@ -28,6 +28,8 @@ pub struct HourlySeries {
     pub wind_speed_m_s: Option<Vec<f64>>,
     /// Short-wave irradiance on the level [W/m2], where it was read; NaN in hours it is missing and was not filled.
     pub shortwave_w_m2: Option<Vec<f64>>,
+    /// What each irradiance stands for; it may differ from `stamp`.
+    pub shortwave_stamp: Stamp,
     /// False where temperature or humidity is missing and was not filled.
     pub known: Vec<bool>,
     /// What was read, filled and flagged on the way here.

@@ -22,6 +22,7 @@ pub fn hours(readings: impl IntoIterator<Item = (f64, f64)>) -> HourlySeries {
         pressure_pa: airs.iter().map(|air| air.pressure_pa).collect(),
         wind_speed_m_s: None,
         shortwave_w_m2: None,
+        shortwave_stamp: Stamp::Instant,
         known: vec![true; airs.len()],
         report: SeriesReport::default(),
         assumptions: Vec::new(),
