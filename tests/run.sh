@@ -28,9 +28,10 @@ step() {
 
 release_build() { cargo build --quiet --release --locked; }
 
+# openapi_document PATH VERSION
 openapi_document() {
-    curl --silent --fail --output target/steps/openapi.json "$base/openapi.json" \
-        && "$venv/bin/openapi-spec-validator" --schema 3.1 target/steps/openapi.json
+    curl --silent --fail --output target/steps/openapi.json "$base/$1" \
+        && "$venv/bin/openapi-spec-validator" --schema "$2" target/steps/openapi.json
 }
 
 # fuzz_the_document OPTION...: how much is asked; all the rest is fixed.
@@ -47,13 +48,18 @@ everything() {
     step "tools" install_tools
     step "format" cargo fmt --check
     step "lints" cargo clippy --quiet --locked --all-targets -- -D warnings
-    step "shell scripts" "$venv/bin/shellcheck" --external-sources tests/run.sh tests/benches/instructions.sh .ci/run
+    step "shell scripts" "$venv/bin/shellcheck" --external-sources tests/run.sh tests/steps/clients.sh tests/benches/instructions.sh .ci/run
     step "unit, integration and reference tests" cargo nextest run --profile ci --locked
     step "examples in the docs" cargo test --quiet --locked --doc
     step "release build" release_build
     step "image" image_lint
     step "server starts" start_server
-    step "OpenAPI 3.1" openapi_document
+    step "OpenAPI 3.1" openapi_document openapi.json 3.1
+    step "OpenAPI 3.0" openapi_document openapi-3.0.json 3.0
+    for version in 3.1 3.0; do
+        step "Python client from $version" tests/steps/clients.sh python $version "$base"
+        step "TypeScript client from $version" tests/steps/clients.sh typescript $version "$base"
+    done
     step "requests made up from the document" fuzz_the_document --max-examples 150
     step "examples of the README" python3 tests/steps/readme.py README.md "$base" "$binary"
     step "server stops" stop_server

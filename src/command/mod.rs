@@ -24,8 +24,8 @@ enum Command {
     Serve(serve::Serve),
     /// Predict without a server: request and readings from files.
     Predict(predict::Predict),
-    /// Print the API description (OpenAPI 3.1).
-    Openapi,
+    /// Print the API description.
+    Openapi(openapi::OpenApi),
     /// Ask a running service whether it is ready; exit 0 if so.
     Healthcheck(healthcheck::Healthcheck),
 }
@@ -35,7 +35,7 @@ pub fn run(cli: Cli) -> Result<(), String> {
     match cli.command {
         Command::Serve(serve) => serve::run(&serve),
         Command::Predict(predict) => predict::run(&predict),
-        Command::Openapi => openapi::run(),
+        Command::Openapi(openapi) => openapi::run(&openapi),
         Command::Healthcheck(healthcheck) => healthcheck::run(&healthcheck),
     }
 }

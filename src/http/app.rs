@@ -22,6 +22,7 @@ struct Inner {
     metrics: PrometheusHandle,
     rate_limit: Option<RateLimit>,
     document: Bytes,
+    document_3_0: Bytes,
     schemas: Schemas,
     predictions: Predictions,
     reading: Places,
@@ -41,6 +42,9 @@ impl App {
             ready: AtomicBool::new(true),
             metrics: crate::telemetry::metrics(),
             document: super::openapi::text(document).into(),
+            document_3_0: super::openapi::twin_text(document)
+                .expect("a test rewrites the description")
+                .into(),
             schemas: Schemas::of(&value),
         }))
     }
@@ -73,6 +77,11 @@ impl App {
     /// The API description as served.
     pub fn document(&self) -> Bytes {
         self.0.document.clone()
+    }
+
+    /// Its twin in OpenAPI 3.0.3.
+    pub fn document_3_0(&self) -> Bytes {
+        self.0.document_3_0.clone()
     }
 
     /// The use case behind `/v1/predictions`.

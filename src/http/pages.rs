@@ -36,6 +36,15 @@ pub async fn get_openapi_document(State(app): State<App>) -> Response {
     ([(header::CONTENT_TYPE, "application/json")], app.document()).into_response()
 }
 
+/// This description for generators that cannot read 3.1
+///
+/// OpenAPI 3.0.3, rewritten from the 3.1 document.
+#[utoipa::path(get, path = "/openapi-3.0.json", tag = "service", security(()),
+    responses((status = 200, description = "The OpenAPI 3.0.3 document.", body = Object, content_type = "application/json")))]
+pub async fn get_openapi_3_0_document(State(app): State<App>) -> Response {
+    ([(header::CONTENT_TYPE, "application/json")], app.document_3_0()).into_response()
+}
+
 /// All problem types on one page
 #[utoipa::path(get, path = "/problems", tag = "service", security(()),
     responses((status = 200, description = "A page.", body = String, content_type = "text/html")))]

@@ -19,6 +19,7 @@ fn routes() -> OpenApiRouter<App> {
         .routes(routes!(example_devices::list_example_devices))
         .routes(routes!(pages::get_start_page))
         .routes(routes!(pages::get_openapi_document))
+        .routes(routes!(pages::get_openapi_3_0_document))
         .routes(routes!(pages::list_problems))
         .routes(routes!(pages::get_problem))
         .routes(routes!(health::get_liveness))

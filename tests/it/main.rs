@@ -17,6 +17,7 @@ mod house_rules;
 mod intake_csv;
 mod weather;
 mod openapi;
+mod openapi_twin;
 mod program;
 mod prediction;
 mod routes;

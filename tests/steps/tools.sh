@@ -2,8 +2,9 @@
 venv=tests/.venv
 
 install_tools() {
-    for program in curl python3; do
-        command -v "$program" > /dev/null || { apt-get -qq update && apt-get -qq install -y "$program" > /dev/null; }
+    for program in curl python3 node:nodejs npm; do
+        command -v "${program%:*}" > /dev/null \
+            || { apt-get -qq update && apt-get -qq install -y "${program#*:}" > /dev/null; }
     done
     if ! cmp -s tests/steps/requirements.txt "$venv/installed.txt"; then
         rm -rf "$venv"

@@ -44,7 +44,7 @@ fn the_rule_bites() {
 #[test]
 fn no_machine_paths_and_no_package_hosts() {
     let endings = [
-        ".rs", ".md", ".toml", ".sh", ".py", ".js", ".mjs", ".json", ".yml", ".yaml", ".csv", ".service", "run",
+        ".rs", ".md", ".toml", ".sh", ".py", ".js", ".mjs", ".ts", ".json", ".yml", ".yaml", ".csv", ".service", "run",
     ];
     let mut files = source::files_under(".", &endings);
     files.extend(
