@@ -10,7 +10,7 @@ use dipcast::http::negotiate::Format;
 use dipcast::http::router;
 use dipcast::http::schema::Schemas;
 use dipcast::http::v1::predictions::{PredictionAnswer, csv_lines, order, pieces, problem_of};
-use dipcast::service::{PredictionReport, Predictions};
+use dipcast::service::{Clock, PredictionOrder, PredictionReport, Predictions, Weather};
 use indicatif::{ProgressBar, ProgressStyle};
 
 #[derive(Args)]
@@ -43,6 +43,7 @@ pub(super) fn run(arguments: &Predict) -> Result<(), String> {
     let upload = file.is_some();
     let document = serde_json::to_value(router::document()).map_err(|error| error.to_string())?;
     let order = order(&Schemas::of(&document), &text, file, format).map_err(|problem| problem.to_string())?;
+    let order = fetched(order, upload)?;
     let bar = Bar::default();
     let predictions = Predictions::new(&config.runs, &config.limits);
     let report = predictions.run_here(&order, &|done, total| bar.show(done, total));
@@ -52,6 +53,14 @@ pub(super) fn run(arguments: &Predict) -> Result<(), String> {
         arguments.format,
         upload,
     )
+}
+
+/// The order with its weather at hand.
+fn fetched(order: PredictionOrder, upload: bool) -> Result<PredictionOrder, String> {
+    let runtime = tokio::runtime::Runtime::new().map_err(|error| format!("the runtime could not start: {error}"))?;
+    let weather = Weather::new(Clock::system());
+    let fetched = runtime.block_on(weather.fetched(order));
+    fetched.map_err(|error| problem_of(error, upload).to_string())
 }
 
 fn read(file: &Path) -> Result<Vec<u8>, String> {

@@ -10,7 +10,7 @@ use super::body_room::BodyRoom;
 use super::middleware::rate_limit::RateLimit;
 use super::schema::Schemas;
 use crate::config::Config;
-use crate::service::{Places, Predictions};
+use crate::service::{Clock, Places, Predictions, Weather};
 
 /// Shared by all requests; cheap to clone.
 #[derive(Clone)]
@@ -25,6 +25,7 @@ struct Inner {
     document_3_0: Bytes,
     schemas: Schemas,
     predictions: Predictions,
+    weather: Weather,
     reading: Places,
     body_room: BodyRoom,
 }
@@ -37,6 +38,7 @@ impl App {
             reading: Places::new(config.runs.parallel, config.server.max_connections),
             body_room: BodyRoom::new(config.limits.bodies_bytes),
             predictions: Predictions::new(&config.runs, &config.limits),
+            weather: Weather::new(Clock::system()),
             rate_limit: RateLimit::new(config.access.requests_per_minute),
             config,
             ready: AtomicBool::new(true),
@@ -87,6 +89,11 @@ impl App {
     /// The use case behind `/v1/predictions`.
     pub fn predictions(&self) -> &Predictions {
         &self.0.predictions
+    }
+
+    /// Fetches weather by coordinates.
+    pub fn weather(&self) -> &Weather {
+        &self.0.weather
     }
 
     /// Places for reading requests: large ones take a core for a while.

@@ -1,8 +1,9 @@
-//! Use cases: resolve the device, read the weather, run the model. No words of any protocol.
+//! Use cases: resolve the device, fetch or read the weather, run the model. No words of any protocol.
 //!
-//! Reading order: [`PredictionOrder`] is what a caller wants, [`Predictions`] runs it, [`PredictionReport`] comes back,
+//! Reading order: [`PredictionOrder`] is what a caller wants, [`Weather`] fetches what it lacks, [`Predictions`] runs it, [`PredictionReport`] comes back,
 //! [`PredictError`] says why not.
 
+mod clock;
 mod error;
 mod order;
 mod places;
@@ -11,10 +12,13 @@ pub mod records;
 mod report;
 mod run;
 mod tables;
+mod weather;
 
+pub use clock::Clock;
 pub use error::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
 pub use order::{DeviceChoice, Place, PredictionOrder, WeatherChecks, WeatherSource};
 pub use places::Places;
 pub use report::{PredictionReport, StallPoint};
 pub use run::{AVERAGED_HOURS_MAX, BAND_HOUR_SAMPLES_MAX, Predictions, Progress, RESOLVED_HOURS_MAX};
 pub use tables::{evaporants, example, examples, fluids};
+pub use weather::{Climate, EndpointOrder, SpanOrder, Weather};

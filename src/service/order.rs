@@ -2,7 +2,8 @@
 
 use bytes::Bytes;
 
-use super::records::{Definition, Layout, Options, RawReadings};
+use super::records::{Definition, FetchedWeather, Layout, Options, RawReadings};
+use super::weather::EndpointOrder;
 
 /// One device in one place over one series of readings.
 #[derive(Debug, Clone)]
@@ -49,6 +50,20 @@ pub enum WeatherSource {
         /// What its columns mean.
         layout: Option<Box<Layout>>,
     },
+    /// To be fetched by coordinates.
+    Endpoint(Box<EndpointOrder>),
+    /// Fetched by coordinates.
+    Fetched(Box<FetchedWeather>),
+}
+
+impl WeatherSource {
+    /// What was fetched, if it was.
+    pub fn fetched(&self) -> Option<&FetchedWeather> {
+        match self {
+            Self::Fetched(fetched) => Some(fetched),
+            _ => None,
+        }
+    }
 }
 
 /// How strict to be with the readings; none takes the weather room's default.

@@ -4,6 +4,7 @@ pub use crate::intake::csv::{
     Ambiguous, Clock, ColumnMapping, Columns, Dialect, LabelName, Layout, Nonexistent, OWN_HEADER, RowFilter,
     TimeLayout,
 };
+pub use crate::intake::endpoints::{Coordinates, Facts, FetchedWeather, Nature, Provenance, Stretch};
 pub use crate::model::cycle::{HourState, Method, TracePoint};
 pub use crate::model::device::{
     ALL_BOUNDS, BalanceDefinition, BodyDefinition, Bound, CupDefinition, Definition, Derived, DipDefinition,

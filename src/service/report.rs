@@ -1,6 +1,8 @@
 //! What comes back.
 
-use super::records::{Assumption, Caution, ClockSchedule, Definition, Derived, Prediction, SeriesReport, Stamp};
+use super::records::{
+    Assumption, Caution, ClockSchedule, Definition, Derived, Prediction, Provenance, SeriesReport, Stamp,
+};
 
 /// A prediction with all that went into it.
 #[derive(Debug, Clone)]
@@ -21,6 +23,8 @@ pub struct PredictionReport {
     pub stamp: Stamp,
     /// What was read, filled and flagged.
     pub weather: SeriesReport,
+    /// Where the readings came from, if they were fetched.
+    pub provenance: Option<Provenance>,
     /// The prediction itself.
     pub prediction: Prediction,
     /// Everything assumed: device, weather, run.

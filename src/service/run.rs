@@ -94,7 +94,7 @@ fn carry_out(order: &PredictionOrder, limits: &Limits, progress: Progress) -> Re
 }
 
 /// A sound device with the name of the example, if it is one.
-struct Known {
+pub(super) struct Known {
     example: Option<String>,
     definition: Definition,
     device: Device,
@@ -103,7 +103,7 @@ struct Known {
     cautions: Vec<Caution>,
 }
 
-fn checked_device(choice: &DeviceChoice) -> Result<Known, Vec<OrderFault>> {
+pub(super) fn checked_device(choice: &DeviceChoice) -> Result<Known, Vec<OrderFault>> {
     let (example, definition) = match choice {
         DeviceChoice::Own(definition) => (None, definition.as_ref().clone()),
         DeviceChoice::Example(name) => (Some(name.clone()), example_definition(name)?),
@@ -133,14 +133,30 @@ fn hourly(order: &PredictionOrder, limits: &Limits) -> Result<HourlySeries, Vec<
     let in_weather = |faults: Vec<WeatherFault>| faults.into_iter().map(OrderFault::Weather).collect::<Vec<_>>();
     let readings = readings(&order.weather, limits).map_err(in_weather)?;
     let (defaults, checks) = (RegulariseOptions::default(), order.weather_checks);
+    let fetched = order.weather.fetched();
+    let gap_hours = fetched
+        .and_then(|fetched| fetched.gap_hours)
+        .unwrap_or(defaults.max_gap_hours);
     let options = RegulariseOptions {
-        elevation_m: order.place.elevation_m,
-        max_gap_hours: checks.max_gap_hours.unwrap_or(defaults.max_gap_hours),
+        elevation_m: order
+            .place
+            .elevation_m
+            .or(fetched.and_then(|fetched| fetched.elevation_m)),
+        max_gap_hours: checks.max_gap_hours.unwrap_or(gap_hours),
         max_unknown_share: checks.max_unknown_share.unwrap_or(defaults.max_unknown_share),
         accept_suspicious: checks.accept_suspicious,
         ..defaults
     };
-    regularise(readings, &options).map_err(in_weather)
+    let told = |faults: Vec<WeatherFault>| match fetched {
+        Some(_) => faults.into_iter().map(of_fetched).collect(),
+        None => faults,
+    };
+    regularise(readings, &options).map_err(|faults| in_weather(told(faults)))
+}
+
+/// A fault of readings the caller never saw: told in words, without rows and columns of a file.
+fn of_fetched(fault: WeatherFault) -> WeatherFault {
+    WeatherFault::whole(fault.code, format!("of the fetched weather: {fault}"))
 }
 
 fn readings(source: &WeatherSource, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
@@ -153,10 +169,15 @@ fn readings(source: &WeatherSource, limits: &Limits) -> Result<RawReadings, Vec<
             };
             csv::read(file, layout.as_deref(), &limits)
         }
+        WeatherSource::Fetched(fetched) => Ok(fetched.readings.clone()),
+        WeatherSource::Endpoint(endpoint) => {
+            let detail = format!("the weather of {} was not fetched before the run", endpoint.source);
+            Err(vec![WeatherFault::whole("not_fetched", detail)])
+        }
     }
 }
 
-fn check_length(order: &PredictionOrder, hours: usize) -> Result<(), PredictError> {
+pub(super) fn check_length(order: &PredictionOrder, hours: usize) -> Result<(), PredictError> {
     let options = &order.options;
     let by_method = match options.method {
         Method::Averaged => HourLimit::Averaged,
@@ -209,6 +230,7 @@ fn report(order: &PredictionOrder, known: Known, series: HourlySeries, predictio
         hours: series.known.len(),
         stamp: series.stamp,
         weather: series.report,
+        provenance: order.weather.fetched().map(|fetched| fetched.provenance.clone()),
         prediction,
         assumptions,
         cautions,

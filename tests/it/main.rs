@@ -13,6 +13,7 @@ mod bad_csv;
 mod bad_input;
 mod command;
 mod demo_files;
+mod endpoints;
 mod house_rules;
 mod intake_csv;
 mod weather;

@@ -4,7 +4,7 @@ use utoipa::openapi::example::ExampleBuilder;
 use utoipa::openapi::{OpenApi, RefOr};
 
 /// Name, summary, text.
-const REQUESTS: [(&str, &str, &str); 2] = [
+const REQUESTS: [(&str, &str, &str); 3] = [
     (
         "own_device",
         "A device of your own and a day of readings, in an invented shop",
@@ -14,6 +14,11 @@ const REQUESTS: [(&str, &str, &str); 2] = [
         "example_device",
         "The shortest request: an example device and six hours",
         include_str!("../../../openapi/examples/shortest.json"),
+    ),
+    (
+        "by_coordinates",
+        "Weather of a place by its coordinates, from the built-in source, with no network",
+        include_str!("../../../openapi/examples/by-coordinates.json"),
     ),
 ];
 

@@ -40,7 +40,11 @@ pub mod notes;
 pub mod options;
 /// `POST /v1/predictions`
 pub mod predictions;
+/// Where fetched weather came from.
+pub mod provenance;
 /// Clock times of a week.
 pub mod schedule;
 /// The readings of a prediction.
 pub mod weather;
+/// Weather by coordinates.
+pub mod weather_endpoint;

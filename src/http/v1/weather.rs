@@ -1,9 +1,10 @@
-//! The readings of a prediction: in the request, or in a file beside it.
+//! The readings of a prediction: in the request, in a file beside it, or fetched by coordinates.
 
 use serde::{Deserialize, Serialize};
 use utoipa::ToSchema;
 
 use super::layout::CsvLayout;
+use super::weather_endpoint::EndpointWeather;
 use crate::http::error::FaultItem;
 use crate::service::WeatherChecks;
 use crate::service::records::{Label, LabelName, RawReadings};
@@ -11,18 +12,21 @@ use crate::service::records::{Label, LabelName, RawReadings};
 /// 0 °C in kelvin, by definition.
 const ZERO_CELSIUS_K: f64 = 273.15;
 
-/// The readings: `inline`, or `upload` for a file in the part `weather` of a form.
+/// The readings: `inline`, `upload` for a file in the part `weather` of a form, or `endpoint` for weather by coordinates.
 #[derive(Debug, Clone, Serialize, Deserialize, ToSchema)]
 #[serde(untagged)]
 #[schema(discriminator(property_name = "kind", mapping(
     ("inline" = "#/components/schemas/InlineWeather"),
     ("upload" = "#/components/schemas/UploadedWeather"),
+    ("endpoint" = "#/components/schemas/EndpointWeather"),
 )))]
 pub enum Weather {
     /// In the request.
     Inline(Box<InlineWeather>),
     /// In a file beside it.
     Upload(Box<UploadedWeather>),
+    /// By coordinates.
+    Endpoint(Box<EndpointWeather>),
 }
 
 /// Hourly readings in columns of equal length; null is a missing reading. Relative humidity or dew point is needed.
@@ -158,6 +162,13 @@ impl InlineWeather {
 }
 
 impl UploadedWeather {
+    /// How strict to be.
+    pub fn checks(&self) -> WeatherChecks {
+        checks(self.max_gap_hours, self.max_unknown_share, self.accept_suspicious)
+    }
+}
+
+impl EndpointWeather {
     /// How strict to be.
     pub fn checks(&self) -> WeatherChecks {
         checks(self.max_gap_hours, self.max_unknown_share, self.accept_suspicious)

@@ -9,6 +9,7 @@ use super::spells::{StallSpell, StallSpellsSummary, Visit};
 use crate::http::v1::device::{DerivedFigures, Device, StallHumidity};
 use crate::http::v1::notes::{Assumption, Caution};
 use crate::http::v1::options::{DeviceState, Method};
+use crate::http::v1::provenance::FetchedWeather;
 use crate::service::PredictionReport;
 use crate::service::records::{Flag, ModelInfo, Stamp};
 
@@ -76,7 +77,7 @@ pub struct DeviceReport {
 /// What was read, filled and flagged.
 #[derive(Debug, Serialize, ToSchema)]
 pub struct WeatherReport {
-    /// `inline` or `upload`.
+    /// `inline`, `upload` or `endpoint`.
     pub source: &'static str,
     /// Readings found.
     pub readings: usize,
@@ -92,6 +93,10 @@ pub struct WeatherReport {
     pub hourly_value: &'static str,
     /// Implausible or contradictory readings; never edited silently.
     pub flags: Vec<WeatherFlag>,
+    /// Where the readings came from, if they were fetched by coordinates.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub fetched: Option<FetchedWeather>,
 }
 
 /// One kind of oddity in the readings.
@@ -164,7 +169,11 @@ impl WeatherReport {
     fn of(report: &PredictionReport, upload: bool) -> Self {
         let weather = &report.weather;
         Self {
-            source: if upload { "upload" } else { "inline" },
+            source: match (&report.provenance, upload) {
+                (Some(_), _) => "endpoint",
+                (None, true) => "upload",
+                (None, false) => "inline",
+            },
             readings: weather.readings,
             hours: report.hours,
             hours_filled: weather.hours_filled,
@@ -175,6 +184,7 @@ impl WeatherReport {
                 Stamp::MeanOfHour => "mean_of_hour",
             },
             flags: weather.flags.iter().map(Into::into).collect(),
+            fetched: report.provenance.as_ref().map(Into::into),
         }
     }
 }

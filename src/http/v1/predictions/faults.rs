@@ -81,6 +81,13 @@ fn weather_item(fault: &WeatherFault, upload: bool) -> FaultItem {
     if let Some(path) = layout {
         return FaultItem::at(format!("/weather/{path}"), fault.code, fault.detail.clone());
     }
+    let endpoint = fault
+        .column
+        .as_deref()
+        .and_then(|column| column.strip_prefix("endpoint/"));
+    if let Some(field) = endpoint {
+        return FaultItem::at(format!("/weather/{field}"), fault.code, fault.detail.clone());
+    }
     if upload {
         let row = fault.row.map(|row| row as u64);
         return FaultItem::in_file(row, fault.column.clone(), fault.code, fault.detail.clone());

@@ -40,8 +40,8 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 
 /// Predict cycles, stall hours and water
 ///
-/// One device in one place over one series of hourly readings, sent in the request or as a CSV file in a form. Answered
-/// at once up to 200,000 hours (method `averaged`) or 2,208 hours (`resolved`), and up to 6,400,000 hours times samples
+/// One device in one place over one series of hourly readings, sent in the request, as a CSV file in a form, or fetched by
+/// coordinates. Answered at once up to 200,000 hours (method `averaged`) or 2,208 hours (`resolved`), and up to 6,400,000 hours times samples
 /// with bands; beyond it 422 `too_many_hours`. `text/csv` and `application/x-ndjson` give the hours alone.
 #[utoipa::path(
     post, path = "/v1/predictions", tag = "predictions", params(FormatQuery),
@@ -66,6 +66,7 @@ pub async fn create_prediction(State(app): State<App>, request: Request) -> Resu
         .reading()
         .run(move |_| Ok(order(reader.schemas(), &text, file, format)));
     let order = reading.await.map_err(told)??;
+    let order = app.weather().fetched(order).await.map_err(told)?;
     app.predictions()
         .run(order, move |report| respond(report, format, upload))
         .await
@@ -129,7 +130,7 @@ pub fn rounded(value: f64) -> f64 {
 }
 
 /// An instant as RFC 3339 in UTC.
-fn instant(unix_s: i64) -> String {
+pub fn instant(unix_s: i64) -> String {
     let instant = chrono::DateTime::from_timestamp(unix_s, 0).unwrap_or_default();
     instant.to_rfc3339_opts(chrono::SecondsFormat::Secs, true)
 }

@@ -88,7 +88,11 @@ impl PredictionRequest {
                 options: self.options.unwrap_or_default().record(lamp_hours),
             }),
             (device, weather) => {
-                let faults = device.err().into_iter().chain(weather.err()).collect();
+                let faults = device
+                    .err()
+                    .into_iter()
+                    .chain(weather.err().into_iter().flatten())
+                    .collect();
                 Err(Problem::with_faults(ProblemCode::InvalidRequest, faults))
             }
         }
@@ -108,16 +112,23 @@ fn choice(own: Option<Device>, example: Option<String>) -> Result<DeviceChoice, 
     }
 }
 
-fn source(weather: Weather, file: Option<Bytes>) -> Result<(WeatherSource, WeatherChecks), FaultItem> {
-    let wrong = |detail: &str| FaultItem::at("/weather/kind", "wrong_kind", detail);
+fn source(weather: Weather, file: Option<Bytes>) -> Result<(WeatherSource, WeatherChecks), Vec<FaultItem>> {
+    let wrong = |detail: &str| vec![FaultItem::at("/weather/kind", "wrong_kind", detail)];
     match (weather, file) {
         (Weather::Inline(inline), None) => {
             let checks = inline.checks();
-            Ok((WeatherSource::Readings(Box::new(inline.readings()?)), checks))
+            let readings = inline.readings().map_err(|fault| vec![fault])?;
+            Ok((WeatherSource::Readings(Box::new(readings)), checks))
         }
         (Weather::Upload(upload), Some(file)) => Ok(uploaded(*upload, file)),
+        (Weather::Endpoint(endpoint), None) => {
+            Ok((WeatherSource::Endpoint(Box::new(endpoint.order()?)), endpoint.checks()))
+        }
         (Weather::Inline(_), Some(_)) => Err(wrong(
             "a file came in the part weather, but the kind is inline; set it to upload, or leave the part out",
+        )),
+        (Weather::Endpoint(_), Some(_)) => Err(wrong(
+            "a file came in the part weather, but the kind is endpoint; set it to upload, or leave the part out",
         )),
         (Weather::Upload(_), None) => Err(wrong(
             "upload needs multipart/form-data with the file in the part weather; inline readings have kind inline",

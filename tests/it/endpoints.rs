@@ -1,0 +1,3 @@
+//! Weather by coordinates: requests, sources, and what the network can do to them.
+
+mod fixture;
