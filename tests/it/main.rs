@@ -24,6 +24,7 @@ mod prediction;
 mod routes;
 mod server;
 mod support;
+mod time;
 mod reference;
 
 /// A file of `tests/data`.

@@ -10,7 +10,8 @@ use crate::service::records;
 /// `HH:MM`, up to and with `24:00`.
 const CLOCK_PATTERN: &str = "^(([01][0-9]|2[0-3]):[0-5][0-9]|24:00)$";
 
-/// Clock times of a week in the zone of the request, with dated exceptions.
+/// Clock times of a week in the zone of the request, with dated exceptions. Where the clock is put back, a time it shows
+/// twice means its first showing; where it is put forward, a time it skips means the moment of the jump.
 #[derive(Debug, Clone, Default, Serialize, Deserialize, ToSchema)]
 #[serde(deny_unknown_fields)]
 pub struct Schedule {

@@ -58,6 +58,10 @@ pub struct InlineWeather {
     /// Short-wave irradiance on the level [W/m²]; used by outdoor places only.
     #[serde(default)]
     pub shortwave_w_m2: Option<Vec<Option<f64>>>,
+    /// What the times say about the irradiance, where that differs from the rest: `mean_of_preceding_hour` in many
+    /// services' hourly answers. Default: as `label`.
+    #[serde(default)]
+    pub shortwave_label: Option<ReadingLabel>,
     /// Longest gap that is interpolated [h]. Default 3.
     #[serde(default)]
     #[schema(maximum = 24)]
@@ -145,6 +149,7 @@ impl InlineWeather {
         let hours = RawReadings::hourly(start_unix_s, self.air_temperature_c.len());
         Ok(RawReadings {
             label: Label::from(label),
+            shortwave_label: self.shortwave_label.map(|label| LabelName::from(label).into()),
             relative_humidity: scaled(self.relative_humidity_pct, 0.01, 0.0),
             dew_point_k: scaled(self.dew_point_c, 1.0, ZERO_CELSIUS_K),
             pressure_pa: scaled(self.air_pressure_hpa, 100.0, 0.0),

@@ -115,14 +115,15 @@ fn lit_share(lit: &Intervals, checked: &Checked, range: Span) -> Vec<f64> {
         .collect()
 }
 
-/// The instants of a scheduled round: each so many days at the clock time of the start.
+/// The instants of a scheduled round: each so many days at the clock time of the start; none on a day that the calendar
+/// leaves out.
 fn scheduled(options: &Options, checked: &Checked, range: Span) -> Vec<i64> {
     if options.attendance.policy != AttendancePolicy::Every {
         return Vec::new();
     }
     let start_wall_s = checked.zone.wall_clock_s(range.from_unix_s);
     let step_s = i64::from(options.attendance.days) * 86_400;
-    let visits = (1..).map(|n| schedule::instant(&checked.zone, start_wall_s + n * step_s));
+    let visits = (1..).filter_map(|n| schedule::instant_of_existing_day(&checked.zone, start_wall_s + n * step_s));
     visits.take_while(|unix_s| *unix_s < range.to_unix_s).collect()
 }
 

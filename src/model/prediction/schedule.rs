@@ -159,6 +159,15 @@ pub(super) fn instant(zone: &Zone, wall_s: i64) -> i64 {
     }
 }
 
+/// The instant of a wall-clock reading; `None` on a day that the calendar leaves out.
+pub(super) fn instant_of_existing_day(zone: &Zone, wall_s: i64) -> Option<i64> {
+    let unix_s = instant(zone, wall_s);
+    let day = |unix_s: i64| zone.wall_clock_s(unix_s).div_euclid(DAY_S);
+    let wanted = wall_s.div_euclid(DAY_S);
+    let is_left_out = day(unix_s - 1) < wanted && wanted < day(unix_s);
+    (!is_left_out).then_some(unix_s)
+}
+
 /// The moment at which the clock jumped over a reading. No jump is longer than a day.
 fn jump(zone: &Zone, unmoved_unix_s: i64, offset_before_s: i64) -> i64 {
     first_second_where(unmoved_unix_s - DAY_S - 1, unmoved_unix_s, |unix_s| {
@@ -327,6 +336,22 @@ mod tests {
         assert_eq!(open_hours(&all_day, "Pacific/Apia", "2011-12-29", "2012-01-01"), 48.0);
         let shop = every_day(&[("09:00", "17:00")]);
         assert_eq!(open_hours(&shop, "Pacific/Apia", "2011-12-29", "2012-01-01"), 16.0);
+    }
+
+    /// Apia had no 30 December 2011; in Scoresbysund 29 March 2025 ended at 23:00 (tz database): an hour of a day is
+    /// left out, not the day.
+    #[test]
+    fn only_a_whole_day_that_is_left_out_has_no_instant() {
+        let found = |zone: &str, date: &str, hour: i64| {
+            let wall_s = read_date(date).unwrap() * DAY_S + hour * 3600;
+            instant_of_existing_day(&Zone::parse(zone).unwrap(), wall_s)
+        };
+        assert_eq!(found("Pacific/Apia", "2011-12-30", 10), None);
+        assert!(found("Pacific/Apia", "2011-12-29", 10).is_some());
+        assert!(found("Pacific/Apia", "2011-12-31", 0).is_some());
+        let midnight = wall_clock_s(2025, 3, 30, 1, 0, 0);
+        assert_eq!(found("America/Scoresbysund", "2025-03-29", 23), midnight);
+        assert_eq!(found("America/Scoresbysund", "2025-03-30", 0), midnight);
     }
 
     #[test]

@@ -13,6 +13,7 @@ use super::series::{Flag, HourlySeries, SeriesReport, Sightings};
 use super::steps::flag_steps;
 use super::suspicion::suspicions;
 use crate::model::air::saturation_pressure_pa;
+use crate::model::notes::Assumption;
 
 /// Lays readings on hours: sorts, screens, takes vapour pressure from dew point or relative humidity, averages what shares
 /// an hour, fills short gaps in temperature and vapour pressure, finds a station pressure for every hour, and says all of
@@ -88,6 +89,7 @@ fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeri
         Some(values)
     };
     let shortwave_label = raw.shortwave_label.unwrap_or(raw.label);
+    raw.assumptions.extend(irradiance_moved(&raw, shortwave_label));
     Ok(HourlySeries {
         start_unix_s: grid.start_unix_s,
         stamp: raw.label.stamp(),
@@ -100,6 +102,24 @@ fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeri
         known,
         report,
         assumptions: raw.assumptions,
+    })
+}
+
+/// Irradiance labelled otherwise than the air lies in other hours than the air beside it.
+fn irradiance_moved(raw: &RawReadings, label: Label) -> Option<Assumption> {
+    let columns_differ = raw.shortwave_w_m2.is_some() && label != raw.label;
+    let means = match label {
+        Label::Instant => "taken at its time",
+        Label::MeanOfFollowingHour => "the mean of the hour following its time",
+        Label::MeanOfPrecedingHour => "the mean of the hour preceding its time",
+    };
+    columns_differ.then(|| {
+        let value = format!("{means}, otherwise than the air beside it");
+        Assumption::new(
+            "irradiance",
+            value,
+            "hours at the ends of the series that only one of the two tells of",
+        )
     })
 }
 

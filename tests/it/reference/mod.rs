@@ -6,3 +6,5 @@ mod device;
 mod fluids;
 mod table;
 mod transfer;
+
+pub use table::rows;
