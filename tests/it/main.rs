@@ -23,6 +23,7 @@ mod program;
 mod prediction;
 mod routes;
 mod server;
+mod signs;
 mod support;
 mod time;
 mod reference;

@@ -1,6 +1,8 @@
 //! Totals are the sum of their parts, whatever the zone and the visits.
 
 use super::air::*;
+use dipcast::model::device::Device;
+use dipcast::model::fluids::Liquid;
 use dipcast::model::prediction::*;
 
 fn close(a: f64, b: f64) -> bool {
@@ -160,5 +162,128 @@ fn water_balances() {
         let felt_g = end.felt_liquid_g - 1e3 * device.head.felt_capacity_kg;
         let residual_g = filled_g - found.summary.totals.water_g.total - cup_g - felt_g;
         assert!(residual_g.abs() < 1e-6, "{policy:?} {delay_hours}: {residual_g} g");
+    }
+}
+
+/// What felt and cup hold in the end, told by the end state alone [g of water, g of ethanol].
+fn left_g(device: &Device, end: &EndState) -> [f64; 2] {
+    let felt = Liquid::from_abv(1e-3 * end.felt_liquid_g, end.felt_strength_abv_pct);
+    let cup = device.cup.as_ref().unwrap();
+    let of_strength = Liquid::from_abv(1.0, end.cup_strength_abv_pct.unwrap());
+    let fallen_m3 = 1e-3 * end.cup_drop_mm.unwrap() * cup.area_m2;
+    let cup_kg = cup.full.total_kg() - fallen_m3 * of_strength.density_kg_m3(end.cup_temp_c + 273.15);
+    let both = felt.plus(of_strength.scaled(cup_kg));
+    [1e3 * both.water_kg, 1e3 * both.ethanol_kg]
+}
+
+fn drinking_spirit(strength_abv_pct: f64) -> Device {
+    let mut definition = dipcast::model::device::examples().remove(0).definition;
+    definition.evaporant.name = "ethanol_water".into();
+    definition.evaporant.strength_abv_pct = Some(strength_abv_pct);
+    dipcast::model::device::check(&definition).unwrap().device
+}
+
+fn full_g(device: &Device) -> [f64; 2] {
+    let felt = Liquid::from_abv(device.head.felt_capacity_kg, device.evaporant_abv_pct);
+    let both = felt.plus(device.cup.as_ref().unwrap().full);
+    [1e3 * both.water_kg, 1e3 * both.ethanol_kg]
+}
+
+/// Spirit is replaced whole at a visit: of water and of ethanol, what was there and what was poured is what was lost, what
+/// was thrown away and what is left. A run that ends when somebody comes tells what is thrown away.
+#[test]
+fn spirit_balances_over_its_visits() {
+    for strength_abv_pct in [12.0, 40.0, 70.0] {
+        let device = drinking_spirit(strength_abv_pct);
+        let every = |hours: usize| {
+            let attendance = Attendance {
+                policy: AttendancePolicy::Every,
+                days: 3,
+                delay_hours: 0.0,
+            };
+            run(&device, &steady(hours, 22.0, 45.0), Options { attendance, ..plain() }).unwrap()
+        };
+        let whole = every(24 * 20);
+        let full = full_g(&device);
+        let (mut had_g, mut gone_g) = (full, left_g(&device, &whole.end_state));
+        for visit in &whole.visits {
+            let before = every(((visit.at_unix_s - START_UNIX_S) / 3600) as usize);
+            let thrown_g = left_g(&device, &before.end_state);
+            for (liquid, poured_g) in [visit.water_g, visit.ethanol_g].into_iter().enumerate() {
+                had_g[liquid] += poured_g;
+                gone_g[liquid] += thrown_g[liquid];
+                assert!(
+                    close(poured_g, full[liquid]),
+                    "{poured_g} g poured, {} g is full",
+                    full[liquid]
+                );
+            }
+        }
+        gone_g[0] += whole.summary.totals.water_g.total;
+        gone_g[1] += whole.summary.totals.ethanol_g.total;
+        assert_eq!(whole.visits.len(), 6);
+        for liquid in 0..2 {
+            let residual = gone_g[liquid] / had_g[liquid] - 1.0;
+            assert!(
+                residual.abs() < 1e-9,
+                "{strength_abv_pct} %: {had_g:?} g against {gone_g:?} g"
+            );
+        }
+    }
+}
+
+/// The same where somebody comes in the very second it is due, hour after hour in changing air.
+#[test]
+fn spirit_balances_over_visits_in_mid_hour() {
+    use dipcast::model::cycle::*;
+    // A shallow reach brings somebody within hours, also where every dip is followed.
+    for method in [Method::Averaged, Method::Resolved] {
+        let mut device = drinking_spirit(40.0);
+        device.cup.as_mut().unwrap().reach_m = 2e-4;
+        let forcing = |hour: usize| {
+            let warm = (hour as f64 / 24.0 * std::f64::consts::TAU).sin();
+            Forcing::still(
+                dipcast::model::air::Air::from_relative_humidity(295.0 + 4.0 * warm, 0.4 - 0.1 * warm, 101_325.0),
+                0.3,
+            )
+        };
+        let mut state = State::settled(&device, &Tuning::default(), &forcing(0));
+        let (mut had, mut gone, mut visits) = (state.felt.plus(state.cup), Liquid::default(), 0);
+        let hours = if method == Method::Averaged { 240 } else { 3 };
+        for hour in 0..hours {
+            let air = HourForcing {
+                start: forcing(hour),
+                end: forcing(hour + 1),
+                known: true,
+            };
+            let mut at_s = 0.0;
+            while at_s < 3600.0 {
+                let out = run_stretch(
+                    &device,
+                    &Tuning::default(),
+                    method,
+                    &mut state,
+                    &air,
+                    at_s,
+                    3600.0,
+                    true,
+                );
+                gone = gone.plus(out.head_loss).plus(out.cup_loss);
+                at_s = out.end_s;
+                if out.due.is_some() {
+                    gone = gone.plus(state.felt).plus(state.cup);
+                    had = had.plus(refill(&device, &mut state));
+                    visits += 1;
+                }
+            }
+        }
+        gone = gone.plus(state.felt).plus(state.cup);
+        assert!(visits > 1, "{method:?}: {visits}");
+        for (had_kg, gone_kg) in [(had.water_kg, gone.water_kg), (had.ethanol_kg, gone.ethanol_kg)] {
+            assert!(
+                (gone_kg / had_kg - 1.0).abs() < 1e-9,
+                "{method:?}: {had_kg} kg against {gone_kg} kg"
+            );
+        }
     }
 }
