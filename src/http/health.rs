@@ -20,18 +20,21 @@ pub struct Health {
     pub version: &'static str,
 }
 
-fn health(status: &'static str) -> Json<Health> {
-    Json(Health {
-        status,
-        version: env!("CARGO_PKG_VERSION"),
-    })
+impl Health {
+    /// This program's, in a word.
+    pub fn of(status: &'static str) -> Self {
+        Self {
+            status,
+            version: env!("CARGO_PKG_VERSION"),
+        }
+    }
 }
 
 /// Is the process alive
 #[utoipa::path(get, path = "/livez", tag = "service", security(()),
     responses((status = 200, description = "It is.", body = Health)))]
 pub async fn get_liveness() -> Json<Health> {
-    health("ok")
+    Json(Health::of("ok"))
 }
 
 /// Does it take requests
@@ -41,7 +44,7 @@ pub async fn get_liveness() -> Json<Health> {
     responses((status = 200, description = "It does.", body = Health)))]
 pub async fn get_readiness(State(app): State<App>) -> Result<Json<Health>, Problem> {
     if app.is_ready() {
-        Ok(health("ready"))
+        Ok(Json(Health::of("ready")))
     } else {
         Err(Problem::new(ProblemCode::NotReady, "the service is shutting down").retry_after(10))
     }

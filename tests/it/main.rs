@@ -18,6 +18,7 @@ mod house_rules;
 mod intake_csv;
 mod weather;
 mod openapi;
+mod openapi_examples;
 mod openapi_twin;
 mod program;
 mod prediction;

@@ -1,9 +1,14 @@
 //! The answers every operation can give besides its own: problems, described once and referred to.
 
+use serde_json::{Value, json};
 use utoipa::openapi::path::{Operation, PathItem};
 use utoipa::openapi::{ContentBuilder, Header, ObjectBuilder, OpenApi, Ref, RefOr, Response, ResponseBuilder, Type};
 
-use crate::http::error::PROBLEM_JSON;
+use crate::http::error::{PROBLEM_JSON, ProblemDocument};
+use crate::http::problems::KINDS;
+
+/// A made-up id of a request.
+const REQUEST_ID: &str = "019b4c2e-7d10-7c3a-9f51-2a6f0e8d4b17";
 
 /// Status, name in the components, what it says.
 const PROBLEMS: [(&str, &str, &str); 12] = [
@@ -91,7 +96,10 @@ fn add_problems(path: &str, operation: &mut Operation, posts: bool) {
 
 fn problem(status: &str, description: &str) -> Response {
     let schema = Ref::from_schema_name("ProblemDocument");
-    let content = ContentBuilder::new().schema(Some(schema)).build();
+    let content = ContentBuilder::new()
+        .schema(Some(schema))
+        .example(example(status))
+        .build();
     let response = ResponseBuilder::new()
         .description(description)
         .content(PROBLEM_JSON, content);
@@ -103,6 +111,29 @@ fn problem(status: &str, description: &str) -> Response {
         _ => with_id,
     }
     .build()
+}
+
+/// A problem of this status as a caller meets it.
+fn example(status: &str) -> Option<Value> {
+    if status == "422" {
+        let refused = include_str!("../../../openapi/examples/answers/refused.json");
+        return Some(serde_json::from_str(refused).expect("the example is JSON; a test compares it"));
+    }
+    let kind = KINDS.iter().find(|kind| kind.status.as_str() == status)?;
+    let problem = ProblemDocument {
+        problem_type: format!("/problems/{}", kind.code),
+        title: kind.title,
+        status: kind.status.as_u16(),
+        detail: kind.cause.to_owned(),
+        instance: REQUEST_ID.to_owned(),
+        errors: Vec::new(),
+        available: if status == "406" {
+            vec!["application/json"]
+        } else {
+            Vec::new()
+        },
+    };
+    Some(json!(problem))
 }
 
 fn header(description: &str, kind: Type) -> Header {

@@ -49,9 +49,16 @@ pub struct EvaporantItem {
     responses((status = 200, description = "All evaporants.", body = EvaporantList)))]
 pub async fn list_evaporants(headers: HeaderMap, RawQuery(query): RawQuery) -> Result<Json<EvaporantList>, Problem> {
     negotiate::json_only(&headers, query.as_deref())?;
-    Ok(Json(EvaporantList {
-        items: service::evaporants().iter().map(EvaporantItem::from).collect(),
-    }))
+    Ok(Json(EvaporantList::all()))
+}
+
+impl EvaporantList {
+    /// The whole table.
+    pub fn all() -> Self {
+        Self {
+            items: service::evaporants().iter().map(EvaporantItem::from).collect(),
+        }
+    }
 }
 
 impl From<&EvaporantRow> for EvaporantItem {

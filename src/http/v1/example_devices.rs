@@ -43,9 +43,16 @@ pub async fn list_example_devices(
     RawQuery(query): RawQuery,
 ) -> Result<Json<ExampleDeviceList>, Problem> {
     negotiate::json_only(&headers, query.as_deref())?;
-    Ok(Json(ExampleDeviceList {
-        items: service::examples().into_iter().map(ExampleDevice::from).collect(),
-    }))
+    Ok(Json(ExampleDeviceList::all()))
+}
+
+impl ExampleDeviceList {
+    /// The whole table.
+    pub fn all() -> Self {
+        Self {
+            items: service::examples().into_iter().map(ExampleDevice::from).collect(),
+        }
+    }
 }
 
 impl From<Example> for ExampleDevice {

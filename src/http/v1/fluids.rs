@@ -74,9 +74,16 @@ pub struct FluidItem {
     responses((status = 200, description = "All working fluids.", body = FluidList)))]
 pub async fn list_fluids(headers: HeaderMap, RawQuery(query): RawQuery) -> Result<Json<FluidList>, Problem> {
     negotiate::json_only(&headers, query.as_deref())?;
-    Ok(Json(FluidList {
-        items: service::fluids().iter().map(FluidItem::from).collect(),
-    }))
+    Ok(Json(FluidList::all()))
+}
+
+impl FluidList {
+    /// The whole table.
+    pub fn all() -> Self {
+        Self {
+            items: service::fluids().iter().map(FluidItem::from).collect(),
+        }
+    }
 }
 
 impl From<&WorkingFluid> for FluidItem {
