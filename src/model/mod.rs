@@ -14,6 +14,8 @@ pub mod fluids;
 pub mod device;
 /// The hourly series: time axis, units, gaps, plausibility.
 pub mod weather;
+/// From the weather outside to the air at the device: outdoors, a room, a glass case.
+pub mod place;
 /// One stretch of time of one device: felt, cup, resolved and averaged cycle.
 pub mod cycle;
 /// Hours become totals, spells, visits, bands, cautions.

@@ -16,9 +16,9 @@ mod weather;
 
 pub use clock::Clock;
 pub use error::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
-pub use order::{DeviceChoice, Place, PredictionOrder, WeatherChecks, WeatherSource};
+pub use order::{DeviceChoice, NamedPlace, PredictionOrder, Site, WeatherChecks, WeatherSource};
 pub use places::Places;
-pub use report::{PredictionReport, StallPoint};
-pub use run::{AVERAGED_HOURS_MAX, BAND_HOUR_SAMPLES_MAX, Predictions, Progress, RESOLVED_HOURS_MAX};
+pub use report::{PlaceOutcome, PredictionReport, StallPoint};
+pub use run::{AVERAGED_HOURS_MAX, BAND_HOUR_SAMPLES_MAX, PLACES_MAX, Predictions, Progress, RESOLVED_HOURS_MAX};
 pub use tables::{evaporants, example, examples, fluids};
 pub use weather::{Climate, EndpointOrder, SpanOrder, Weather};

@@ -2,16 +2,16 @@
 
 use bytes::Bytes;
 
-use super::records::{Definition, FetchedWeather, Layout, Options, RawReadings};
+use super::records::{Definition, FetchedWeather, Layout, Options, Place, RawReadings};
 use super::weather::EndpointOrder;
 
-/// One device in one place over one series of readings.
+/// One device over one series of readings, in one place or in several that are compared.
 #[derive(Debug, Clone)]
 pub struct PredictionOrder {
     /// The device.
     pub device: DeviceChoice,
     /// Where it stands.
-    pub place: Place,
+    pub site: Site,
     /// The readings.
     pub weather: WeatherSource,
     /// How strict to be with the readings.
@@ -29,13 +29,45 @@ pub enum DeviceChoice {
     Example(String),
 }
 
-/// Where the device stands: the readings are the air there.
-#[derive(Debug, Clone, Copy, PartialEq, Default)]
-pub struct Place {
-    /// Air speed at the device [m/s], 0-20; none takes a room's and says so.
-    pub air_speed_m_s: Option<f64>,
+/// Where a device stands or may stand; all of it is one site with one weather.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Site {
     /// Elevation above mean sea level [m], for the pressure where none was read.
     pub elevation_m: Option<f64>,
+    /// The places, one or more; the first is the one predicted in full.
+    pub places: Vec<NamedPlace>,
+    /// Several places were asked for, even if there is only one.
+    pub is_comparison: bool,
+}
+
+/// A place with a name for the answer.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct NamedPlace {
+    /// The caller's own name.
+    pub name: Option<String>,
+    /// The place.
+    pub place: Place,
+}
+
+impl Default for Site {
+    fn default() -> Self {
+        Self {
+            elevation_m: None,
+            places: vec![NamedPlace::default()],
+            is_comparison: false,
+        }
+    }
+}
+
+impl Site {
+    /// Where a place stands in the order, for messages.
+    pub fn path(&self, place: usize) -> String {
+        if self.is_comparison {
+            format!("places/{place}")
+        } else {
+            "place".into()
+        }
+    }
 }
 
 /// Where the readings come from.

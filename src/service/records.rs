@@ -13,9 +13,12 @@ pub use crate::model::device::{
 };
 pub use crate::model::fluids::{CustomFluid, CustomVapourPressure, EvaporantRow, Hazard, WorkingFluid};
 pub use crate::model::notes::{Assumption, Caution, Fault, Severity};
+pub use crate::model::place::{
+    AtDevice, CaseDefinition, MoistureRule, Outdoors, PLACE_BOUNDS, Place, PlaceBound, Room, Spot,
+};
 pub use crate::model::prediction::{
-    Attendance, AttendancePolicy, Band, BandRange, BandRanges, Bands, ClockInterval, ClockSchedule, CycleTrace,
-    EndState, HealedBy, HourColumns, InitialState, LossG, ModelInfo, Options, Period, Prediction, ScheduleException,
-    Spell, StallHours, StallSpells, Totals, Visit, VisitCause,
+    AirSummary, Attendance, AttendancePolicy, Band, BandRange, BandRanges, Bands, ClockInterval, ClockSchedule,
+    CycleTrace, EndState, HealedBy, HourColumns, InitialState, LossG, ModelInfo, Options, Period, Prediction,
+    ScheduleException, Spell, StallHours, StallSpells, Totals, Visit, VisitCause,
 };
 pub use crate::model::weather::{Flag, HourlySeries, Label, RawReadings, SeriesReport, Stamp, WeatherFault};

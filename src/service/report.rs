@@ -1,5 +1,6 @@
 //! What comes back.
 
+use super::NamedPlace;
 use super::records::{
     Assumption, Caution, ClockSchedule, Definition, Derived, Prediction, Provenance, SeriesReport, Stamp,
 };
@@ -15,8 +16,6 @@ pub struct PredictionReport {
     pub lamp_hours: Option<ClockSchedule>,
     /// Figures that follow from it.
     pub derived: Derived,
-    /// Humidity at which it stops, at several air temperatures.
-    pub stall_points: Vec<StallPoint>,
     /// Hours in the series.
     pub hours: usize,
     /// What each hourly value stands for.
@@ -25,9 +24,24 @@ pub struct PredictionReport {
     pub weather: SeriesReport,
     /// Where the readings came from, if they were fetched.
     pub provenance: Option<Provenance>,
+    /// Place by place, in the order they were asked for; at least one.
+    pub outcomes: Vec<PlaceOutcome>,
+    /// Several places were asked for.
+    pub is_comparison: bool,
+}
+
+/// What comes out in one place.
+#[derive(Debug, Clone)]
+pub struct PlaceOutcome {
+    /// The place as given.
+    pub place: NamedPlace,
+    /// The moisture rule taken, if the air went through a room.
+    pub moisture_rule: Option<String>,
+    /// Humidity at which the device stops there, at several air temperatures.
+    pub stall_points: Vec<StallPoint>,
     /// The prediction itself.
     pub prediction: Prediction,
-    /// Everything assumed: device, weather, run.
+    /// Everything assumed: device, weather, place, run.
     pub assumptions: Vec<Assumption>,
     /// Everything to look out for, the most urgent first.
     pub cautions: Vec<Caution>,

@@ -5,14 +5,15 @@ use std::time::Instant;
 use super::places::{Abandoned, Places};
 use super::records::{Assumption, Caution, Definition, Derived, Fault, HourlySeries, Method, Prediction, WeatherFault};
 use super::{
-    DeviceChoice, HourLimit, OrderFault, PredictError, PredictionOrder, PredictionReport, StallPoint, WeatherSource,
-    example, examples,
+    DeviceChoice, HourLimit, OrderFault, PlaceOutcome, PredictError, PredictionOrder, PredictionReport, StallPoint,
+    WeatherSource, example, examples,
 };
 use crate::config::{Limits, Runs};
 use crate::intake::csv;
 use crate::model::cycle::stall_humidity;
 use crate::model::device::{self, Device};
-use crate::model::prediction::{DEFAULT_AIR_SPEED_M_S, PredictionError, PredictionRequest, predict};
+use crate::model::place::{PlacedAir, place_air};
+use crate::model::prediction::{PredictionError, PredictionRequest, predict};
 use crate::model::weather::{RawReadings, RegulariseOptions, regularise};
 
 /// Most hours by the averaged method.
@@ -21,6 +22,9 @@ pub const AVERAGED_HOURS_MAX: usize = 200_000;
 pub const RESOLVED_HOURS_MAX: usize = 2_208;
 /// Most hours times samples with bands: 200,000 hours with 32 samples.
 pub const BAND_HOUR_SAMPLES_MAX: usize = 6_400_000;
+
+/// Most places compared in one order.
+pub const PLACES_MAX: usize = 16;
 
 /// Air temperatures for which the stall humidity is told [°C].
 const STALL_TEMPERATURES_C: [f64; 3] = [10.0, 20.0, 30.0];
@@ -89,8 +93,54 @@ fn carry_out(order: &PredictionOrder, limits: &Limits, progress: Progress) -> Re
         }
     };
     check_length(order, series.known.len())?;
-    let prediction = predicted(order, &device.device, &series, progress)?;
-    Ok(report(order, device, series, prediction))
+    let airs = placed(order, &series)?;
+    let outcomes = outcomes(order, &device, &series, airs, progress)?;
+    Ok(PredictionReport {
+        example: device.example,
+        definition: device.definition,
+        lamp_hours: order.options.lamp_hours.clone(),
+        derived: device.derived,
+        hours: series.known.len(),
+        stamp: series.stamp,
+        weather: series.report,
+        provenance: order.weather.fetched().map(|fetched| fetched.provenance.clone()),
+        outcomes,
+        is_comparison: order.site.is_comparison,
+    })
+}
+
+/// The air of every place, or everything wrong with any of them.
+fn placed(order: &PredictionOrder, series: &HourlySeries) -> Result<Vec<PlacedAir>, PredictError> {
+    let site = &order.site;
+    let (mut airs, mut faults) = (Vec::new(), Vec::new());
+    for (number, named) in site.places.iter().enumerate() {
+        match place_air(series, &named.place, &site.path(number)) {
+            Ok(air) => airs.push(air),
+            Err(wrong) => faults.extend(wrong.into_iter().map(OrderFault::Options)),
+        }
+    }
+    if faults.is_empty() {
+        Ok(airs)
+    } else {
+        Err(PredictError::Faults(faults))
+    }
+}
+
+fn outcomes(
+    order: &PredictionOrder,
+    known: &Known,
+    series: &HourlySeries,
+    airs: Vec<PlacedAir>,
+    progress: Progress,
+) -> Result<Vec<PlaceOutcome>, PredictError> {
+    let count = airs.len();
+    let one = |(number, air): (usize, PlacedAir)| {
+        // Every place has the same hours and samples to do.
+        let told = |done: usize, to_do: usize| progress(number * to_do + done, count * to_do);
+        let prediction = predicted(order, number, &known.device, &air, &told)?;
+        Ok(outcome(order, number, known, series, air, prediction))
+    };
+    airs.into_iter().enumerate().map(one).collect()
 }
 
 /// A sound device with the name of the example, if it is one.
@@ -139,7 +189,7 @@ fn hourly(order: &PredictionOrder, limits: &Limits) -> Result<HourlySeries, Vec<
         .unwrap_or(defaults.max_gap_hours);
     let options = RegulariseOptions {
         elevation_m: order
-            .place
+            .site
             .elevation_m
             .or(fetched.and_then(|fetched| fetched.elevation_m)),
         max_gap_hours: checks.max_gap_hours.unwrap_or(gap_hours),
@@ -183,6 +233,7 @@ pub(super) fn check_length(order: &PredictionOrder, hours: usize) -> Result<(), 
         Method::Averaged => HourLimit::Averaged,
         Method::Resolved => HourLimit::Resolved,
     };
+    let hours = hours.saturating_mul(order.site.places.len());
     let samples = if options.bands { options.samples } else { 0 };
     for (limit, found) in [(by_method, hours), (HourLimit::Bands, hours.saturating_mul(samples))] {
         if found > limit.most() {
@@ -194,52 +245,70 @@ pub(super) fn check_length(order: &PredictionOrder, hours: usize) -> Result<(), 
 
 fn predicted(
     order: &PredictionOrder,
+    place: usize,
     device: &Device,
-    series: &HourlySeries,
+    air: &PlacedAir,
     progress: Progress,
 ) -> Result<Prediction, PredictError> {
     let request = PredictionRequest {
         device,
-        series,
-        air_speed_m_s: order.place.air_speed_m_s,
+        air,
         options: order.options.clone(),
+    };
+    // The model knows one place; the order may have several.
+    let in_order = |mut fault: Fault| {
+        if let Some(rest) = fault.field.strip_prefix("place/") {
+            fault.field = format!("{}/{rest}", order.site.path(place));
+        }
+        OrderFault::Options(fault)
     };
     predict(&request, progress).map_err(|error| match error {
         PredictionError::Cancelled => PredictError::Stopped,
-        PredictionError::Faults(faults) => PredictError::Faults(faults.into_iter().map(OrderFault::Options).collect()),
+        PredictionError::Faults(faults) => PredictError::Faults(faults.into_iter().map(in_order).collect()),
     })
 }
 
-fn report(order: &PredictionOrder, known: Known, series: HourlySeries, prediction: Prediction) -> PredictionReport {
-    let stall_points = stall_points(order, &known.device, &series);
-    let assumptions = [known.assumptions, series.assumptions, prediction.assumptions.clone()].concat();
-    let mut cautions = known.cautions;
-    let repeated = |new: &Caution, had: &[Caution]| had.iter().any(|old| old.code == new.code && old.text == new.text);
-    for caution in &prediction.cautions {
-        if !repeated(caution, &cautions) {
-            cautions.push(caution.clone());
-        }
-    }
-    cautions.sort_by_key(|caution| std::cmp::Reverse(caution.severity));
-    PredictionReport {
-        example: known.example,
-        definition: known.definition,
-        lamp_hours: order.options.lamp_hours.clone(),
-        derived: known.derived,
-        stall_points,
-        hours: series.known.len(),
-        stamp: series.stamp,
-        weather: series.report,
-        provenance: order.weather.fetched().map(|fetched| fetched.provenance.clone()),
+fn outcome(
+    order: &PredictionOrder,
+    place: usize,
+    known: &Known,
+    series: &HourlySeries,
+    air: PlacedAir,
+    prediction: Prediction,
+) -> PlaceOutcome {
+    let assumptions = [
+        &known.assumptions,
+        &series.assumptions,
+        &air.assumptions,
+        &prediction.assumptions,
+    ];
+    PlaceOutcome {
+        place: order.site.places[place].clone(),
+        stall_points: stall_points(&known.device, &air),
+        assumptions: assumptions.into_iter().flatten().cloned().collect(),
+        cautions: cautions(&known.cautions, &prediction.cautions),
+        moisture_rule: air.moisture_rule,
         prediction,
-        assumptions,
-        cautions,
     }
 }
 
-fn stall_points(order: &PredictionOrder, device: &Device, series: &HourlySeries) -> Vec<StallPoint> {
-    let speed_m_s = order.place.air_speed_m_s.unwrap_or(DEFAULT_AIR_SPEED_M_S);
-    let pressure_pa = series.pressure_pa.iter().sum::<f64>() / series.pressure_pa.len() as f64;
+/// Both lists in one, nothing twice, the most urgent first.
+fn cautions(of_device: &[Caution], of_run: &[Caution]) -> Vec<Caution> {
+    let mut all = of_device.to_vec();
+    let repeated = |new: &Caution, had: &[Caution]| had.iter().any(|old| old.code == new.code && old.text == new.text);
+    for caution in of_run {
+        if !repeated(caution, &all) {
+            all.push(caution.clone());
+        }
+    }
+    all.sort_by_key(|caution| std::cmp::Reverse(caution.severity));
+    all
+}
+
+fn stall_points(device: &Device, air: &PlacedAir) -> Vec<StallPoint> {
+    let speed_m_s = air.mean_air_speed_m_s();
+    let pressures = &air.series.pressure_pa;
+    let pressure_pa = pressures.iter().sum::<f64>() / pressures.len() as f64;
     let at = |celsius: f64| StallPoint {
         air_temperature_c: celsius,
         relative_humidity_pct: 100.0 * stall_humidity(device, celsius + 273.15, speed_m_s, pressure_pa),

@@ -40,7 +40,7 @@ fn hours(method: Method, times: usize) {
 }
 
 fn years(times: usize) {
-    let (device, year) = (scene::device(), scene::year());
+    let (device, year) = (scene::device(), scene::placed_year());
     let request = scene::request(&device, &year, Method::Averaged, false);
     for _ in 0..times {
         black_box(predict(&request, &|_, _| true).expect("the year runs"));

@@ -36,7 +36,7 @@ fn resolved_cycles(c: &mut Criterion) {
 }
 
 fn site_year(c: &mut Criterion) {
-    let (device, year) = (scene::device(), scene::year());
+    let (device, year) = (scene::device(), scene::placed_year());
     let mut group = c.benchmark_group("site-year, averaged");
     group.sample_size(10);
     for (name, bands) in [("without bands", false), ("with bands of 32 samples", true)] {

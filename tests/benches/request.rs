@@ -52,7 +52,7 @@ async fn answer(router: Router, body: String) -> usize {
 fn site_year(c: &mut Criterion) {
     let runtime = Runtime::new().expect("threads to run on");
     let (router, _) = router::build(Config::defaults().expect("the defaults are in order"));
-    let (device, year) = (scene::device(), scene::year());
+    let (device, year) = (scene::device(), scene::placed_year());
     let alone = scene::request(&device, &year, Method::Averaged, false);
     let mut group = c.benchmark_group("request for a site-year, without bands");
     group.sample_size(10);

@@ -3,6 +3,7 @@
 use dipcast::model::air::Air;
 use dipcast::model::cycle::{Forcing, HourForcing, Method};
 use dipcast::model::device::{self, Device};
+use dipcast::model::place::{AtDevice, Place, PlacedAir, place_air};
 use dipcast::model::prediction::{Options, PredictionRequest};
 use dipcast::model::weather::{HourlySeries, RawReadings, RegulariseOptions, regularise};
 
@@ -43,8 +44,17 @@ pub fn device() -> Device {
         .device
 }
 
+/// The invented year at the device, in a room's moving air.
+pub fn placed_year() -> PlacedAir {
+    let place = Place::AtDevice(AtDevice {
+        air_speed_m_s: Some(0.1),
+        shortwave_exposure: None,
+    });
+    place_air(&year(), &place, "place").expect("a sound place")
+}
+
 /// The invented year as the model takes it.
-pub fn year() -> HourlySeries {
+fn year() -> HourlySeries {
     let mut readings = RawReadings::hourly(1_767_225_600, HOURS);
     readings.air_temp_k = (0..HOURS).map(|hour| air(hour).0 + 273.15).collect();
     readings.relative_humidity = Some((0..HOURS).map(|hour| air(hour).1 / 100.0).collect());
@@ -66,16 +76,11 @@ pub fn hour() -> HourForcing {
 }
 
 /// What a prediction of the invented year is asked for, without hourly columns.
-pub fn request<'a>(device: &'a Device, series: &'a HourlySeries, method: Method, bands: bool) -> PredictionRequest<'a> {
+pub fn request<'a>(device: &'a Device, air: &'a PlacedAir, method: Method, bands: bool) -> PredictionRequest<'a> {
     let options = Options {
         method,
         bands,
         ..Options::default()
     };
-    PredictionRequest {
-        device,
-        series,
-        air_speed_m_s: Some(0.1),
-        options,
-    }
+    PredictionRequest { device, air, options }
 }

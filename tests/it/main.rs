@@ -20,6 +20,7 @@ mod weather;
 mod openapi;
 mod openapi_examples;
 mod openapi_twin;
+mod place;
 mod program;
 mod prediction;
 mod routes;

@@ -1,6 +1,6 @@
 //! Predictions: whole runs of the shelf device in made-up and real hours.
 
-mod air;
+pub mod air;
 mod attendance;
 mod bands;
 mod calendar;

@@ -34,10 +34,14 @@ pub mod example_devices;
 pub mod fluids;
 /// What a CSV file's columns mean.
 pub mod layout;
+/// Named rules for a room's own vapour.
+pub mod moisture;
 /// Assumptions and cautions.
 pub mod notes;
 /// The options of a prediction.
 pub mod options;
+/// Where a device stands.
+pub mod place;
 /// `POST /v1/predictions`
 pub mod predictions;
 /// Where fetched weather came from.

@@ -131,6 +131,10 @@ pub struct DeviceState {
     #[serde(skip_serializing_if = "Option::is_none")]
     #[schema(minimum = 0, maximum = 1_000_000)]
     pub scale_mg: Option<f64>,
+    /// Relative humidity in the case around the device [%]; only with a case.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(minimum = 0, maximum = 100)]
+    pub case_relative_humidity_pct: Option<f64>,
 }
 
 /// What the samples vary: 5th and 95th percentile of each uncertain input.
@@ -237,6 +241,7 @@ impl From<DeviceState> for records::InitialState {
             cup_temp_c: wire.cup_temp_c,
             dried_out: wire.dried_out,
             scale_mg: wire.scale_mg,
+            case_relative_humidity_pct: wire.case_relative_humidity_pct,
         }
     }
 }
@@ -253,6 +258,7 @@ impl From<records::EndState> for DeviceState {
             cup_temp_c: record.cup_drop_mm.map(|_| record.cup_temp_c),
             dried_out: Some(record.dried_out),
             scale_mg: Some(record.scale_mg),
+            case_relative_humidity_pct: record.case_relative_humidity_pct,
         }
     }
 }

@@ -36,6 +36,7 @@ bounds! {
     FELT_UPTAKE_G "head/felt/uptake_g" "g" 0.0 1000.0
     FELT_CRITICAL_SHARE "head/felt/critical_share" "" 0.0 1.0
     FELT_EXCHANGE_SHARE "head/felt/exchange_share" "" 0.0 1.0
+    FELT_ABSORPTANCE "head/felt/absorptance" "" 0.0 1.0
     TUBE_BORE_MM "tube/bore_mm" "mm" 0.5 50.0
     TUBE_OUTER_DIAMETER_MM "tube/outer_diameter_mm" "mm" 1.0 60.0
     TUBE_LENGTH_MM "tube/length_mm" "mm" 20.0 3000.0

@@ -57,6 +57,8 @@ pub struct FeltDefinition {
     pub critical_share: Option<f64>,
     /// Share of the felt's liquid exchanged with the cup in each dip (0-1).
     pub exchange_share: Option<f64>,
+    /// Share of short-wave radiation the wet felt absorbs (0-1).
+    pub absorptance: Option<f64>,
 }
 
 /// The tube.

@@ -142,6 +142,7 @@ fn felt(thickness_mm: f64, dry_mass_g: f64, capacity_g: f64) -> FeltDefinition {
         uptake_g: None,
         critical_share: None,
         exchange_share: None,
+        absorptance: None,
     }
 }
 

@@ -27,6 +27,8 @@ pub const DEFAULT_VAPOUR_RESET: f64 = 0.5;
 pub const DEFAULT_FREEBOARD_MM: f64 = 5.0;
 /// Share of short-wave radiation clear glass with liquid in it absorbs.
 pub const DEFAULT_ABSORPTANCE: f64 = 0.1;
+/// Share of short-wave radiation a wet dyed felt absorbs: common practice, no source.
+pub const DEFAULT_FELT_ABSORPTANCE: f64 = 0.7;
 /// Density of borosilicate glass 3.3 [g/cm³] [ISO3585].
 pub const DEFAULT_GLASS_DENSITY_G_CM3: f64 = 2.23;
 
@@ -37,6 +39,7 @@ pub(super) struct Filled {
     pub(super) uptake_g: f64,
     pub(super) critical_share: f64,
     pub(super) exchange_share: f64,
+    pub(super) felt_absorptance: f64,
     pub(super) end_gap_mm: f64,
     pub(super) absorptance: f64,
     pub(super) dip_angle_deg: f64,
@@ -78,6 +81,7 @@ impl Filled {
             uptake_g: felt[1],
             critical_share: felt[2],
             exchange_share: felt[3],
+            felt_absorptance: felt[4],
             end_gap_mm: build[0],
             absorptance: build[1],
             dip_angle_deg: build[2],
@@ -96,8 +100,8 @@ impl Filled {
     }
 }
 
-/// Beak area, uptake, critical share, exchange share.
-fn fill_felt(definition: &Definition, filler: &mut Filler) -> [f64; 4] {
+/// Beak area, uptake, critical share, exchange share, absorptance.
+fn fill_felt(definition: &Definition, filler: &mut Filler) -> [f64; 5] {
     let felt = &definition.head.felt;
     let beak = "water and rate: a felted beak adds wet area beside the sphere";
     let uptake = "how fast a dried felt is wet again; the rate only if a cycle evaporates more than this";
@@ -125,6 +129,13 @@ fn fill_felt(definition: &Definition, filler: &mut Filler) -> [f64; 4] {
             "",
             "share of the felt's liquid exchanged with the cup in each dip",
             exchange,
+        ),
+        filler.number(
+            felt.absorptance,
+            DEFAULT_FELT_ABSORPTANCE,
+            "",
+            "share of short-wave radiation the felt absorbs (wet and dyed)",
+            "sun on the head, which slows it; nothing where no short-wave radiation reaches the device",
         ),
     ]
 }

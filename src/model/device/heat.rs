@@ -52,6 +52,7 @@ pub(super) fn head(definition: &Definition, filled: &Filled, vessel: &Vessel, fe
         critical_share: filled.critical_share,
         exchange_share: filled.exchange_share,
         emissivity: FELT_EMISSIVITY,
+        absorptance: filled.felt_absorptance,
     }
 }
 

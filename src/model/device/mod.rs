@@ -91,6 +91,8 @@ pub struct Head {
     pub exchange_share: f64,
     /// Long-wave emissivity of the felt.
     pub emissivity: f64,
+    /// Share of short-wave radiation absorbed.
+    pub absorptance: f64,
 }
 
 /// Body and tube: surface and heat store.

@@ -53,6 +53,7 @@ fn head(head: &HeadDefinition, faults: &mut Faults) {
     faults.optional(FELT_UPTAKE_G, head.felt.uptake_g);
     faults.optional(FELT_CRITICAL_SHARE, head.felt.critical_share);
     faults.optional(FELT_EXCHANGE_SHARE, head.felt.exchange_share);
+    faults.optional(FELT_ABSORPTANCE, head.felt.absorptance);
 }
 
 fn tube(tube: &TubeDefinition, faults: &mut Faults) {

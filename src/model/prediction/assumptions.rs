@@ -1,18 +1,14 @@
 //! What a run takes for granted, said in its answer.
 
 use super::attendance::SHORTEST_BETWEEN_VISITS_S;
-use super::check::Checked;
 use super::request::{AttendancePolicy, BandRange, Options, PredictionRequest};
 use crate::model::notes::Assumption;
 use crate::model::weather::Stamp;
 
 /// The assumptions of a run; those of device and weather are said by their rooms.
-pub(super) fn assumptions(request: &PredictionRequest<'_>, checked: &Checked) -> Vec<Assumption> {
+pub(super) fn assumptions(request: &PredictionRequest<'_>) -> Vec<Assumption> {
     let options = &request.options;
     let mut all = vec![surroundings(), hours(request), attendance(options), calendar()];
-    if request.air_speed_m_s.is_none() {
-        all.push(air_speed(checked.air_speed_m_s));
-    }
     if options.initial_state.is_none() {
         all.push(start());
     }
@@ -48,7 +44,7 @@ fn surroundings() -> Assumption {
 }
 
 fn hours(request: &PredictionRequest<'_>) -> Assumption {
-    let (value, effect) = match request.series.stamp {
+    let (value, effect) = match request.air.series.stamp {
         Stamp::Instant => (
             "straight from each reading to the next; the last is held",
             "how an hour is split between states",
@@ -90,14 +86,6 @@ fn calendar() -> Assumption {
     )
 }
 
-fn air_speed(air_speed_m_s: f64) -> Assumption {
-    Assumption::new(
-        "air speed at the device",
-        format!("{air_speed_m_s} m/s"),
-        "cycles and water: half or twice as much moves the period by about a fifth in an ordinary room",
-    )
-}
-
 fn start() -> Assumption {
     Assumption::new(
         "state at the start",
@@ -131,7 +119,7 @@ fn shared_cup(request: &PredictionRequest<'_>) -> Option<Assumption> {
 }
 
 fn unknown_hours(request: &PredictionRequest<'_>) -> Option<Assumption> {
-    let unknown = request.series.known.iter().filter(|known| !**known).count();
+    let unknown = request.air.series.known.iter().filter(|known| !**known).count();
     (unknown > 0).then(|| {
         Assumption::new(
             "hours without weather",

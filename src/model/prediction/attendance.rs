@@ -82,6 +82,7 @@ impl Person {
         }
         record.cup_drop_m = machine.cup_drop_m();
         record.cup_temp_k = machine.cup_temp_k();
+        record.air = machine.air_of_hour(forcing);
         record
     }
 
@@ -138,7 +139,7 @@ impl Person {
 
 #[cfg(test)]
 mod tests {
-    use super::super::forcing::{AirShift, Surroundings};
+    use super::super::forcing::{AirShift, laid};
     use super::super::testing::{START_UNIX_S, ToyMachine, series};
     use super::*;
     use crate::model::cycle::HourState;
@@ -151,7 +152,7 @@ mod tests {
 
     /// Runs a toy that drinks 1 g/h from a store, with half an hour's worth more in its felt.
     fn run(attendance: Attendance, calendar_h: &[i64], store_g: f64, temps_k: &[f64]) -> Run {
-        let surroundings = Surroundings::new(&series(temps_k, 0.5), 0.1, None, None);
+        let surroundings = laid(&series(temps_k, 0.5));
         let calendar: Vec<i64> = calendar_h.iter().map(|h| START_UNIX_S + h * 3600).collect();
         let mut person = Person::new(attendance, START_UNIX_S, &calendar);
         let mut machine = ToyMachine {

@@ -3,7 +3,7 @@
 //! What follows from fluid, evaporant, glass and lamp alone comes with the device; these are the ones a run brings out.
 
 use super::observed::Observed;
-use super::result::Totals;
+use super::result::{AirSummary, Totals};
 use crate::model::air::ZERO_CELSIUS_K;
 use crate::model::device::Device;
 use crate::model::fluids::flash_point_c;
@@ -14,7 +14,7 @@ use crate::model::weather::zone::instant_text;
 const WARM_WATER_HOURS: f64 = 24.0;
 
 /// The cautions of a run.
-pub(super) fn cautions(device: &Device, observed: &Observed, totals: &Totals) -> Vec<Caution> {
+pub(super) fn cautions(device: &Device, observed: &Observed, totals: &Totals, air: &AirSummary) -> Vec<Caution> {
     let found = [
         body_pressure(device, observed),
         liquid_growth(device, observed),
@@ -23,6 +23,8 @@ pub(super) fn cautions(device: &Device, observed: &Observed, totals: &Totals) ->
         flash_point(device, observed),
         warm_water(device, observed),
         fast_cycles(observed),
+        dew_in_case(air),
+        spirit_in_case(device, air),
     ];
     found.into_iter().flatten().collect()
 }
@@ -168,6 +170,31 @@ fn fast_cycles(observed: &Observed) -> Option<Caution> {
             "For {:.1} h of this run a cycle takes less than 3 s, where neither way of solving it can be trusted. Take those \
              counts as an order of size; judge strength and wear by a test of the device itself.",
             observed.fast_h
+        ),
+    )
+}
+
+fn dew_in_case(air: &AirSummary) -> Option<Caution> {
+    let hours = air.dew_hours.filter(|hours| *hours > 0)?;
+    caution(
+        "dew_in_case",
+        Severity::Warning,
+        format!(
+            "The case ends {hours} h of this run with dew on its glass. Water runs down to whatever stands below: keep \
+             electrics and anything that must stay dry out of it, give it more air, and follow local codes for wet places."
+        ),
+    )
+}
+
+fn spirit_in_case(device: &Device, air: &AirSummary) -> Option<Caution> {
+    (air.dew_hours.is_some() && device.evaporant_abv_pct > 0.0).then_some(())?;
+    caution(
+        "spirit_vapour_in_case",
+        Severity::Danger,
+        format!(
+            "Vapour of spirit ({:.0} % by volume) gathers in a closed case and can be lit by a lamp, a switch or a spark. Use water \
+             in cases; anything else needs ventilation designed and approved by qualified people under the local fire code.",
+            device.evaporant_abv_pct
         ),
     )
 }

@@ -1,6 +1,6 @@
 //! The request as a whole: every fault at once.
 
-use super::request::{AttendancePolicy, BandRange, DEFAULT_AIR_SPEED_M_S, InitialState, Options, PredictionRequest};
+use super::request::{AttendancePolicy, BandRange, InitialState, Options, PredictionRequest};
 use super::schedule::{Intervals, read_schedule};
 use crate::model::device::Device;
 use crate::model::notes::Fault;
@@ -18,7 +18,6 @@ const EXPANSION: f64 = 0.03;
 #[derive(Debug, Clone)]
 pub(super) struct Checked {
     pub(super) zone: Zone,
-    pub(super) air_speed_m_s: f64,
     pub(super) open: Option<Intervals>,
     pub(super) lit: Option<Intervals>,
 }
@@ -27,13 +26,13 @@ pub(super) struct Checked {
 pub(super) fn check(request: &PredictionRequest<'_>) -> Result<Checked, Vec<Fault>> {
     let options = &request.options;
     let mut faults = Vec::new();
-    let air_speed_m_s = request.air_speed_m_s.unwrap_or(DEFAULT_AIR_SPEED_M_S);
-    within(&mut faults, "place/air_speed_m_s", air_speed_m_s, 0.0, 20.0);
     check_series(request, &mut faults);
     check_options(options, &mut faults);
     if let Some(initial) = &options.initial_state {
         check_initial(initial, request.device, &mut faults);
+        check_case_start(initial, request.air.case.is_some(), &mut faults);
     }
+    check_sharers(request, &mut faults);
     let mut schedule = |schedule: &Option<_>, path| schedule.as_ref().map(|s| read_schedule(s, path, &mut faults));
     let open = schedule(&options.opening_hours, "options/opening_hours");
     let lit = schedule(&options.lamp_hours, "options/lamp_hours");
@@ -44,17 +43,12 @@ pub(super) fn check(request: &PredictionRequest<'_>) -> Result<Checked, Vec<Faul
     if !faults.is_empty() {
         return Err(faults);
     }
-    Ok(Checked {
-        zone,
-        air_speed_m_s,
-        open,
-        lit,
-    })
+    Ok(Checked { zone, open, lit })
 }
 
 fn check_series(request: &PredictionRequest<'_>, faults: &mut Vec<Fault>) {
-    if !request.series.known.contains(&true) {
-        let found = request.series.known.len();
+    if !request.air.series.known.contains(&true) {
+        let found = request.air.series.known.len();
         let detail =
             format!("expected at least one hour with temperature and humidity; found {found} hours, none known");
         faults.push(Fault::new("weather", "no_known_hour", detail));
@@ -140,6 +134,33 @@ fn check_initial(initial: &InitialState, device: &Device, faults: &mut Vec<Fault
     for (name, _) in cup_fields.iter().filter(|(_, value)| value.is_some()) {
         let detail = "the device has no cup; leave it out, or give the device a cup";
         faults.push(Fault::new(format!("options/initial_state/{name}"), "no_cup", detail));
+    }
+}
+
+fn check_case_start(initial: &InitialState, has_case: bool, faults: &mut Vec<Fault>) {
+    let path = "options/initial_state/case_relative_humidity_pct";
+    match initial.case_relative_humidity_pct {
+        Some(_) if !has_case => faults.push(Fault::new(
+            path,
+            "no_case",
+            "the device stands in no case; leave it out",
+        )),
+        Some(value) => within(faults, path, value, 0.0, 100.0),
+        None => (),
+    }
+}
+
+/// Devices in a case share whole cups.
+fn check_sharers(request: &PredictionRequest<'_>, faults: &mut Vec<Fault>) {
+    let (Some(case), Some(cup)) = (&request.air.case, &request.device.cup) else {
+        return;
+    };
+    if case.devices % cup.shared_by != 0.0 {
+        let detail = format!(
+            "expected a multiple of the {} devices that drink from one cup (device/cup/shared_by); found {}",
+            cup.shared_by, case.devices
+        );
+        faults.push(Fault::new("place/devices", "cup_not_shared_out", detail));
     }
 }
 

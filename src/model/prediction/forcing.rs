@@ -2,14 +2,18 @@
 
 use crate::model::air::{Air, saturation_pressure_pa};
 use crate::model::cycle::{Forcing, HourForcing};
-use crate::model::device::{LampDefinition, LampTarget};
-use crate::model::weather::{HourlySeries, Stamp};
+use crate::model::device::{Device, LampDefinition, LampTarget};
+use crate::model::place::PlacedAir;
+use crate::model::weather::Stamp;
+
+use super::sun::Sun;
 
 /// The air at one end of an hour, with its saturation pressure kept for the samples.
 #[derive(Debug, Clone, Copy, PartialEq)]
 struct Edge {
     air: Air,
     saturation_pa: f64,
+    speed_m_s: f64,
 }
 
 /// What surrounds the device in all hours; samples shift it.
@@ -19,7 +23,7 @@ pub(super) struct Surroundings {
     known: Vec<bool>,
     lit_share: Option<Vec<f64>>,
     lamp: Option<LampDefinition>,
-    air_speed_m_s: f64,
+    sun: Option<Sun>,
 }
 
 /// How a sample's air differs from the series.
@@ -46,22 +50,17 @@ impl Surroundings {
     /// hour the mean of the two hours that meet there, so an hour's own mean comes out as a quarter of each neighbour and
     /// half of itself; over a run nothing is lost. Next to an unknown hour, and at both ends, the known value is held.
     /// The series has at least one hour.
-    pub(super) fn new(
-        series: &HourlySeries,
-        air_speed_m_s: f64,
-        lamp: Option<LampDefinition>,
-        lit_share: Option<Vec<f64>>,
-    ) -> Self {
-        let first_known = series.known.iter().position(|known| *known);
-        let mut held = edge(air_of(series, first_known.unwrap_or(0)));
+    pub(super) fn new(air: &PlacedAir, device: &Device, lit_share: Option<Vec<f64>>) -> Self {
+        let first_known = air.series.known.iter().position(|known| *known);
+        let mut held = edge(sample_of(air, first_known.unwrap_or(0)));
         Self {
-            edges: (0..series.known.len())
-                .map(|hour| edges_of(series, hour, &mut held))
+            edges: (0..air.series.known.len())
+                .map(|hour| edges_of(air, hour, &mut held))
                 .collect(),
-            known: series.known.clone(),
+            known: air.series.known.clone(),
             lit_share,
-            lamp,
-            air_speed_m_s,
+            lamp: device.lamp.clone(),
+            sun: Sun::on(device, air),
         }
     }
 
@@ -72,20 +71,22 @@ impl Surroundings {
 
     /// The forcing of one hour. A lamp lit for part of an hour gives its mean power all through it.
     pub(super) fn hour(&self, hour: usize, shift: AirShift) -> HourForcing {
-        let (head_w, body_w) = self.lamp_w(hour);
-        let [start, end] = self.edges[hour].map(|edge| {
+        let lamp_w = self.lamp_w(hour);
+        let sun_w = self.sun.as_ref().map_or([(0.0, 0.0); 2], |sun| sun.absorbed_w(hour));
+        let forcing = |end: usize| {
+            let edge = self.edges[hour][end];
             let air = shifted(edge, shift.humidity);
             Forcing {
                 air,
-                air_speed_m_s: self.air_speed_m_s * shift.speed_factor,
+                air_speed_m_s: edge.speed_m_s * shift.speed_factor,
                 surroundings_k: air.temp_k,
-                head_absorbed_w: head_w,
-                body_absorbed_w: body_w,
+                head_absorbed_w: lamp_w.0 + sun_w[end].0,
+                body_absorbed_w: lamp_w.1 + sun_w[end].1,
             }
-        });
+        };
         HourForcing {
-            start,
-            end,
+            start: forcing(0),
+            end: forcing(1),
             known: self.known[hour],
         }
     }
@@ -123,23 +124,20 @@ fn shifted(edge: Edge, humidity: f64) -> Air {
 }
 
 /// `held` is the last known edge, or the first to come: an unknown hour holds it.
-fn edges_of(series: &HourlySeries, hour: usize, held: &mut Edge) -> [Edge; 2] {
-    if !series.known[hour] {
+fn edges_of(air: &PlacedAir, hour: usize, held: &mut Edge) -> [Edge; 2] {
+    if !air.series.known[hour] {
         return [*held; 2];
     }
-    let own = air_of(series, hour);
+    let own = sample_of(air, hour);
     let neighbour = |i: usize| {
-        series
-            .known
-            .get(i)
-            .is_some_and(|known| *known)
-            .then(|| air_of(series, i))
+        let known = air.series.known.get(i).is_some_and(|known| *known);
+        known.then(|| sample_of(air, i))
     };
     let before = hour.checked_sub(1).and_then(neighbour).unwrap_or(own);
     let after = neighbour(hour + 1).unwrap_or(own);
-    let both = match series.stamp {
+    let both = match air.series.stamp {
         Stamp::Instant => [own, after],
-        Stamp::MeanOfHour => [mean_air(&before, &own, 0.5), mean_air(&own, &after, 0.5)],
+        Stamp::MeanOfHour => [halfway(before, own), halfway(own, after)],
     };
     let edges = both.map(edge);
     *held = edges[1];
@@ -147,7 +145,7 @@ fn edges_of(series: &HourlySeries, hour: usize, held: &mut Edge) -> [Edge; 2] {
 }
 
 /// Two saturated airs mix to a little more than saturation: what is too much is taken off here.
-fn edge(air: Air) -> Edge {
+fn edge((air, speed_m_s): (Air, f64)) -> Edge {
     let saturation_pa = saturation_pressure_pa(air.temp_k);
     Edge {
         air: Air {
@@ -155,15 +153,23 @@ fn edge(air: Air) -> Edge {
             ..air
         },
         saturation_pa,
+        speed_m_s,
     }
 }
 
-fn air_of(series: &HourlySeries, hour: usize) -> Air {
-    Air {
+/// Air and its speed at the time of an hour.
+fn sample_of(air: &PlacedAir, hour: usize) -> (Air, f64) {
+    let series = &air.series;
+    let sample = Air {
         temp_k: series.temp_k[hour],
         vapour_pressure_pa: series.vapour_pressure_pa[hour],
         pressure_pa: series.pressure_pa[hour],
-    }
+    };
+    (sample, air.air_speed_m_s[hour])
+}
+
+fn halfway(a: (Air, f64), b: (Air, f64)) -> (Air, f64) {
+    (mean_air(&a.0, &b.0, 0.5), 0.5 * (a.1 + b.1))
 }
 
 fn mean_air(a: &Air, b: &Air, share: f64) -> Air {
@@ -175,16 +181,33 @@ fn mean_air(a: &Air, b: &Air, share: f64) -> Air {
     }
 }
 
+/// A series laid out at a device without a lamp, for tests.
+#[cfg(test)]
+pub(super) fn laid(series: &crate::model::weather::HourlySeries) -> Surroundings {
+    let shelf = crate::model::device::examples().swap_remove(0).definition;
+    let device = crate::model::device::check(&shelf)
+        .expect("the shelf example is sound")
+        .device;
+    Surroundings::new(&super::testing::placed(series), &device, None)
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::model::prediction::testing::series;
+    use crate::model::device::{check, examples};
+    use crate::model::prediction::testing::{placed, series};
+
+    fn device(lamp: Option<LampDefinition>) -> Device {
+        let mut definition = examples().swap_remove(0).definition;
+        definition.lamp = lamp;
+        check(&definition).expect("the shelf example is sound").device
+    }
 
     fn surroundings(temps: &[f64], known: &[bool], stamp: Stamp) -> Surroundings {
         let mut series = series(temps, 0.5);
         series.known = known.to_vec();
         series.stamp = stamp;
-        Surroundings::new(&series, 0.1, None, None)
+        laid(&series)
     }
 
     fn ends(surroundings: &Surroundings, hour: usize) -> (f64, f64) {
@@ -226,7 +249,7 @@ mod tests {
 
     #[test]
     fn a_sample_stays_between_dry_and_saturated() {
-        let s = Surroundings::new(&series(&[293.15, 303.15], 1.0), 0.1, None, None);
+        let s = laid(&series(&[293.15, 303.15], 1.0));
         for humidity in [0.03, -0.03, -2.0] {
             let hour = s.hour(
                 0,
@@ -248,7 +271,7 @@ mod tests {
     fn mixed_saturated_air_is_not_above_saturation() {
         let mut foggy = series(&[283.15, 293.15], 1.0);
         foggy.stamp = Stamp::MeanOfHour;
-        let hour = Surroundings::new(&foggy, 0.1, None, None).hour(0, AirShift::NONE);
+        let hour = laid(&foggy).hour(0, AirShift::NONE);
         assert!(hour.end.air.relative_humidity() <= 1.0);
     }
 
@@ -256,10 +279,11 @@ mod tests {
     fn a_lamp_lit_for_part_of_an_hour_gives_its_mean_power() {
         let lamp = |on| Some(LampDefinition { on, absorbed_w: 2.0 });
         let two = series(&[293.15, 293.15], 0.5);
-        let s = Surroundings::new(&two, 0.1, lamp(LampTarget::Body), Some(vec![0.25, 0.0]));
+        let two = placed(&two);
+        let s = Surroundings::new(&two, &device(lamp(LampTarget::Body)), Some(vec![0.25, 0.0]));
         assert_eq!(s.hour(0, AirShift::NONE).start.body_absorbed_w, 0.5);
         assert_eq!(s.hour(1, AirShift::NONE).start.body_absorbed_w, 0.0);
-        let s = Surroundings::new(&two, 0.1, lamp(LampTarget::Head), None);
+        let s = Surroundings::new(&two, &device(lamp(LampTarget::Head)), None);
         let hour = s.hour(1, AirShift::NONE);
         assert_eq!((hour.start.head_absorbed_w, hour.start.body_absorbed_w), (2.0, 0.0));
     }

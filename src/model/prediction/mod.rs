@@ -1,12 +1,14 @@
 //! Hours become totals, spells, visits, bands and cautions.
 //!
 //! Reading order: [`PredictionRequest`] (what goes in) and [`Prediction`] (what comes out); `check`, `schedule`,
-//! `calendar` and `forcing` prepare; `attendance` runs an hour and splits it at visits; `run` runs all hours; `ledger`,
+//! `calendar` and `forcing` prepare; `machine` and `cased` stand for the device; `attendance` runs an hour and splits it at visits; `run` runs all hours; `ledger`,
 //! `spells`, `figures` and `samples` make the figures; `assumptions` and `cautions` say what goes with them.
 
 mod assumptions;
 mod attendance;
 mod calendar;
+mod case_figures;
+mod cased;
 mod cautions;
 mod check;
 mod columns;
@@ -22,6 +24,7 @@ mod run;
 mod samples;
 mod schedule;
 mod spells;
+mod sun;
 #[cfg(test)]
 mod testing;
 mod trace;
@@ -75,7 +78,7 @@ fn prepare<'a>(
     checked: &Checked,
     progress: &'a (dyn Fn(usize, usize) -> bool + Sync),
 ) -> Common<'a> {
-    let (series, options) = (request.series, &request.options);
+    let (series, options) = (&request.air.series, &request.options);
     let range = range_of(series);
     let hours = series.known.len();
     let open = checked
@@ -83,11 +86,11 @@ fn prepare<'a>(
         .as_ref()
         .map(|open| schedule::spans(open, &checked.zone, range));
     let lit = checked.lit.as_ref().map(|lit| lit_share(lit, checked, range));
-    let lamp = request.device.lamp.clone();
     Common {
         device: request.device,
         options,
-        surroundings: forcing::Surroundings::new(series, checked.air_speed_m_s, lamp, lit),
+        case: request.air.case,
+        surroundings: forcing::Surroundings::new(request.air, request.device, lit),
         calendar: Calendar::new(&checked.zone, series.start_unix_s, hours, open.as_deref()),
         scheduled_unix_s: scheduled(options, checked, range),
         start_unix_s: series.start_unix_s,
@@ -134,7 +137,7 @@ fn assemble(
     nominal: &NominalRun<'_>,
     samples: &[Ledger],
 ) -> Prediction {
-    let (options, range) = (&request.options, range_of(request.series));
+    let (options, range) = (&request.options, range_of(&request.air.series));
     let ledgers = Ledgers {
         calendar: &common.calendar,
         nominal: &nominal.ledger,
@@ -143,6 +146,7 @@ fn assemble(
     let summary = ledgers.summary(range.from_unix_s, range.to_unix_s);
     let (records, visits) = (&nominal.records, &nominal.person.visits);
     let observed = observed::observe(request.device, &common.surroundings, records, visits, range.from_unix_s);
+    let air = observed::air_summary(records, request.air.case.is_some());
     Prediction {
         stall_spells: spells::stall_spells(&nominal.pieces, range.from_unix_s, options.spell_minutes),
         months: options.keep_months.then(|| ledgers.months()),
@@ -150,15 +154,19 @@ fn assemble(
         hours_of_day: nominal.ledger.hours_of_day.clone(),
         hours: options
             .keep_hours
-            .then(|| columns::columns(records, &common.calendar, range.from_unix_s)),
+            .then(|| columns::columns(records, &common.calendar, request.air)),
+        air,
+        case: case_figures::case_figures(request),
         cycle_trace: options
             .cycle_trace
             .then(|| trace::cycle_trace(common, records))
             .flatten(),
-        end_state: nominal.machine.end_state(),
+        end_state: nominal
+            .machine
+            .end_state(&records.last().map(|record| record.air).unwrap_or_default()),
         time_zone: checked.zone.name().to_string(),
-        assumptions: assumptions::assumptions(request, checked),
-        cautions: cautions::cautions(request.device, &observed, &summary.totals),
+        assumptions: assumptions::assumptions(request),
+        cautions: cautions::cautions(request.device, &observed, &summary.totals, &air),
         model: model_info(options, samples.len()),
         visits: visits.clone(),
         summary,

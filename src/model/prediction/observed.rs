@@ -3,7 +3,8 @@
 use super::calendar::HOUR_S;
 use super::forcing::{AirShift, Surroundings};
 use super::record::HourRecord;
-use super::result::Visit;
+use super::result::{AirSummary, Visit};
+use crate::model::air::ZERO_CELSIUS_K;
 use crate::model::device::Device;
 use crate::model::fluids::Liquid;
 
@@ -27,6 +28,24 @@ pub(super) struct Observed {
     pub(super) warm_water_longest_h: f64,
     /// Time with cycles shorter than 3 s [h].
     pub(super) fast_h: f64,
+}
+
+/// Means and extremes of the air at the device over the known hours.
+pub(super) fn air_summary(records: &[HourRecord], has_case: bool) -> AirSummary {
+    let known: Vec<&HourRecord> = records.iter().filter(|record| !record.is_unknown()).collect();
+    let mean = |value: &dyn Fn(&HourRecord) -> f64| {
+        known.iter().map(|record| value(record)).sum::<f64>() / known.len().max(1) as f64
+    };
+    let humidities = known.iter().map(|record| record.air.relative_humidity_pct());
+    let dew_hours = known.iter().filter(|record| record.air.dew_kg > 0.0).count();
+    AirSummary {
+        mean_temp_c: mean(&|r| r.air.temp_k - ZERO_CELSIUS_K),
+        mean_relative_humidity_pct: mean(&|r| r.air.relative_humidity_pct()),
+        least_relative_humidity_pct: humidities.clone().reduce(f64::min).unwrap_or(0.0),
+        most_relative_humidity_pct: humidities.reduce(f64::max).unwrap_or(0.0),
+        mean_air_speed_m_s: mean(&|r| r.air.speed_m_s),
+        dew_hours: has_case.then_some(dew_hours),
+    }
 }
 
 /// Looks through a run; unknown hours are left out.

@@ -1,6 +1,7 @@
 //! What one hour brought, and the pieces it was split into.
 
-use crate::model::cycle::{HourState, Stretch};
+use crate::model::air::saturation_pressure_pa;
+use crate::model::cycle::{HourForcing, HourState, Stretch};
 use crate::model::fluids::Liquid;
 
 use super::result::{LossG, StallHours, Totals};
@@ -22,6 +23,36 @@ pub(super) struct HourRecord {
     pub(super) cup_drop_m: f64,
     /// At the end of the hour.
     pub(super) cup_temp_k: Option<f64>,
+    /// Mean over the hour.
+    pub(super) air: HourAir,
+}
+
+/// The air at the device over an hour.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub(super) struct HourAir {
+    pub(super) temp_k: f64,
+    pub(super) vapour_pa: f64,
+    pub(super) speed_m_s: f64,
+    /// Dew on the glass of the case at the end of the hour [kg].
+    pub(super) dew_kg: f64,
+}
+
+impl HourAir {
+    /// Halfway between both ends of an hour.
+    pub(super) fn of(hour: &HourForcing) -> Self {
+        let middle = hour.at(0.5 * HOUR_S);
+        Self {
+            temp_k: middle.air.temp_k,
+            vapour_pa: middle.air.vapour_pressure_pa,
+            speed_m_s: middle.air_speed_m_s,
+            dew_kg: 0.0,
+        }
+    }
+
+    /// Relative humidity of the mean vapour at the mean temperature [%].
+    pub(super) fn relative_humidity_pct(&self) -> f64 {
+        100.0 * self.vapour_pa / saturation_pressure_pa(self.temp_k)
+    }
 }
 
 impl HourRecord {

@@ -3,23 +3,18 @@
 use crate::model::cycle::Method;
 use crate::model::device::Device;
 use crate::model::notes::Fault;
-use crate::model::weather::HourlySeries;
+use crate::model::place::PlacedAir;
 
 /// One device in one place over one series of hours.
 #[derive(Debug, Clone)]
 pub struct PredictionRequest<'a> {
     /// The checked device.
     pub device: &'a Device,
-    /// Air at the device, hour by hour.
-    pub series: &'a HourlySeries,
-    /// Air speed at the device [m/s], 0-20; `None` takes [`DEFAULT_AIR_SPEED_M_S`] and says so.
-    pub air_speed_m_s: Option<f64>,
+    /// Air at the device, hour by hour, and the case around it if there is one.
+    pub air: &'a PlacedAir,
     /// Everything that has a default.
     pub options: Options,
 }
-
-/// Air speed taken when none is given: an ordinary room [m/s].
-pub const DEFAULT_AIR_SPEED_M_S: f64 = 0.1;
 
 /// Everything that has a default.
 #[derive(Debug, Clone, PartialEq)]
@@ -158,6 +153,8 @@ pub struct InitialState {
     pub dried_out: Option<bool>,
     /// Scale on the felt [mg].
     pub scale_mg: Option<f64>,
+    /// Relative humidity in the case around the device [%].
+    pub case_relative_humidity_pct: Option<f64>,
 }
 
 /// From the 5th to the 95th percentile of an uncertain input.

@@ -22,6 +22,10 @@ pub struct Prediction {
     pub hours_of_day: Vec<Totals>,
     /// Hour by hour, if kept.
     pub hours: Option<HourColumns>,
+    /// The air at the device over the whole run.
+    pub air: AirSummary,
+    /// What the case needs, if the device stands in one.
+    pub case: Option<CaseFigures>,
     /// One cycle close up, if asked for and if it ever ran.
     pub cycle_trace: Option<CycleTrace>,
     /// The device at the end: can be sent back as the start of the next run.
@@ -260,6 +264,43 @@ pub struct HourColumns {
     pub body_temp_c: Vec<Option<f64>>,
     /// Mean head temperature, vapour side [°C]; none in an unknown hour.
     pub head_temp_c: Vec<Option<f64>>,
+    /// Mean air temperature at the device [°C]; none in an unknown hour.
+    pub air_temp_c: Vec<Option<f64>>,
+    /// Relative humidity at the device [%], of the mean vapour at the mean temperature; none in an unknown hour.
+    pub air_relative_humidity_pct: Vec<Option<f64>>,
+    /// Mean air speed at the device [m/s]; none in an unknown hour.
+    pub air_speed_m_s: Vec<Option<f64>>,
+    /// Temperature outdoors [°C]; none where the readings are the air at the device.
+    pub outdoor_temp_c: Option<Vec<Option<f64>>>,
+    /// Relative humidity outdoors [%]; none where the readings are the air at the device.
+    pub outdoor_relative_humidity_pct: Option<Vec<Option<f64>>>,
+}
+
+/// Means and extremes of the air at the device, over the known hours of the nominal run.
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
+pub struct AirSummary {
+    /// Mean temperature [°C].
+    pub mean_temp_c: f64,
+    /// Mean of the hours' relative humidity [%].
+    pub mean_relative_humidity_pct: f64,
+    /// Lowest hourly relative humidity [%].
+    pub least_relative_humidity_pct: f64,
+    /// Highest hourly relative humidity [%].
+    pub most_relative_humidity_pct: f64,
+    /// Mean air speed [m/s].
+    pub mean_air_speed_m_s: f64,
+    /// Hours that end with dew on the glass of the case; none without a case.
+    pub dew_hours: Option<usize>,
+}
+
+/// What a case needs, in the mean air around it over the known hours, held steady.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct CaseFigures {
+    /// Relative humidity above which the device stands still in it [%].
+    pub stall_relative_humidity_pct: f64,
+    /// Air changes below which its own vapour stops the device [1/h]; none where the air around the case is too damp for
+    /// any number of them.
+    pub least_air_changes_per_hour: Option<f64>,
 }
 
 /// One cycle close up, in the air of the middle of one hour held steady.
@@ -292,6 +333,8 @@ pub struct EndState {
     pub dried_out: bool,
     /// Scale on the felt [mg].
     pub scale_mg: f64,
+    /// Relative humidity in the case around the device [%]; none without a case.
+    pub case_relative_humidity_pct: Option<f64>,
 }
 
 impl From<EndState> for InitialState {
@@ -307,6 +350,7 @@ impl From<EndState> for InitialState {
             cup_temp_c: end.cup_drop_mm.map(|_| end.cup_temp_c),
             dried_out: Some(end.dried_out),
             scale_mg: Some(end.scale_mg),
+            case_relative_humidity_pct: end.case_relative_humidity_pct,
         }
     }
 }

@@ -4,6 +4,7 @@ use std::sync::atomic::{AtomicUsize, Ordering};
 
 use super::attendance::Person;
 use super::calendar::Calendar;
+use super::cased::Cased;
 use super::forcing::{self, AirShift, Surroundings};
 use super::ledger::Ledger;
 use super::machine::RunningDevice;
@@ -12,6 +13,7 @@ use super::request::{Options, PredictionError};
 use super::samples::Sample;
 use crate::model::cycle::{Method, State, Tuning};
 use crate::model::device::Device;
+use crate::model::place::Case;
 
 /// Hours between two reports of progress: some ten milliseconds either way, so that a run stops soon after it is left.
 fn report_hours(method: Method) -> usize {
@@ -26,6 +28,7 @@ pub(super) struct Common<'a> {
     pub(super) device: &'a Device,
     pub(super) options: &'a Options,
     pub(super) surroundings: Surroundings,
+    pub(super) case: Option<Case>,
     pub(super) calendar: Calendar,
     pub(super) scheduled_unix_s: Vec<i64>,
     pub(super) start_unix_s: i64,
@@ -134,9 +137,10 @@ impl<'a> Common<'a> {
             tuning,
             method: self.options.method,
             state: State::settled(device, &tuning, &first),
+            cased: self.case.map(|case| Cased::new(case, first.air.vapour_pressure_pa)),
         };
         if let Some(initial) = &self.options.initial_state {
-            machine.begin_with(initial);
+            machine.begin_with(initial, &first.air);
         }
         machine
     }

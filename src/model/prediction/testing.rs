@@ -4,6 +4,7 @@ use super::machine::Machine;
 use crate::model::air::Air;
 use crate::model::cycle::{DueCause, Forcing, HourForcing, HourState, Stretch};
 use crate::model::fluids::Liquid;
+use crate::model::place::{AtDevice, Place, PlacedAir, place_air};
 use crate::model::weather::{HourlySeries, SeriesReport, Stamp};
 
 /// 2026-01-01T00:00:00Z.
@@ -25,6 +26,15 @@ pub(super) fn series(temps_k: &[f64], rh_fraction: f64) -> HourlySeries {
         report: SeriesReport::default(),
         assumptions: Vec::new(),
     }
+}
+
+/// The same, placed where it was read.
+pub(super) fn placed(series: &HourlySeries) -> PlacedAir {
+    let at_device = AtDevice {
+        air_speed_m_s: Some(0.1),
+        shortwave_exposure: None,
+    };
+    place_air(series, &Place::AtDevice(at_device), "place").expect("a sound place")
 }
 
 /// A device as simple as can be: it drinks 1 g an hour in any air, falls due when `store_g` are gone, and then runs on

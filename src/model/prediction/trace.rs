@@ -14,7 +14,9 @@ pub(super) fn cycle_trace(common: &Common<'_>, records: &[HourRecord]) -> Option
     running.sort_by(|a, b| records[*a].cycles.total_cmp(&records[*b].cycles));
     let hour = *running.get(running.len() / 2)?;
     let middle_s = HOUR_S as f64 / 2.0;
-    let forcing = forcing::at(&common.surroundings.hour(hour, AirShift::NONE), middle_s);
+    let mut forcing = forcing::at(&common.surroundings.hour(hour, AirShift::NONE), middle_s);
+    // In a case the device meets other air than what surrounds it.
+    forcing.air.vapour_pressure_pa = records[hour].air.vapour_pa;
     let state = State::settled(common.device, &Tuning::default(), &forcing);
     Some(CycleTrace {
         at_unix_s: common.start_unix_s + hour as i64 * HOUR_S + HOUR_S / 2,

@@ -61,7 +61,7 @@ impl Weather {
         match (at, span, climate, coverage) {
             (Ok(at), Ok(span), Ok(climate), None) => Ok(Wanted {
                 at,
-                elevation_m: order.place.elevation_m,
+                elevation_m: order.site.elevation_m,
                 span,
                 climate,
             }),

@@ -3,11 +3,11 @@
 use dipcast::config::Config;
 use dipcast::http::router;
 use dipcast::service::records::{
-    AttendancePolicy, BalanceDefinition, EvaporantDefinition, ExtraMass, LampDefinition, LampTarget, Options,
-    RawReadings,
+    AtDevice, AttendancePolicy, BalanceDefinition, CaseDefinition, EvaporantDefinition, ExtraMass, LampDefinition,
+    LampTarget, MoistureRule, Options, Outdoors, Place, RawReadings, Room,
 };
 use dipcast::service::{
-    DeviceChoice, OrderFault, Place, PredictError, PredictionOrder, Predictions, WeatherChecks, WeatherSource, example,
+    DeviceChoice, OrderFault, PredictError, PredictionOrder, Predictions, Site, WeatherChecks, WeatherSource, example,
 };
 use serde_json::Value;
 
@@ -20,7 +20,7 @@ fn order() -> PredictionOrder {
     };
     PredictionOrder {
         device: DeviceChoice::Example("shelf-180".to_owned()),
-        place: Place::default(),
+        site: Site::default(),
         weather: WeatherSource::Readings(Box::new(readings)),
         weather_checks: WeatherChecks::default(),
         options: Options {
@@ -41,15 +41,105 @@ fn fault(order: &PredictionOrder) -> Option<OrderFault> {
     }
 }
 
+/// The order's place as one of a kind, made so if it is not.
+macro_rules! of_kind {
+    ($name:ident, $kind:ident, $record:ty, $fresh:expr) => {
+        fn $name(order: &mut PredictionOrder) -> &mut $record {
+            let place = &mut order.site.places[0].place;
+            if !matches!(place, Place::$kind(_)) {
+                *place = Place::$kind($fresh);
+            }
+            match place {
+                Place::$kind(record) => record,
+                other => panic!("{other:?}"),
+            }
+        }
+    };
+}
+
+of_kind!(at_device, AtDevice, AtDevice, AtDevice::default());
+of_kind!(outdoors, Outdoors, Outdoors, Outdoors::default());
+of_kind!(room, Room, Room, Room::default());
+of_kind!(
+    case,
+    Case,
+    CaseDefinition,
+    CaseDefinition {
+        inside: Box::default(),
+        volume_l: 50.0,
+        air_changes_per_hour: 1.0,
+        devices: None,
+        other_vapour_g_per_h: None,
+        warmer_by_k: None,
+        air_speed_m_s: None,
+    }
+);
+
 type Set = fn(&mut PredictionOrder, f64);
 
 /// Schema, field, and how to set it in an order.
-const FIELDS: [(&str, &str, Set); 8] = [
-    ("PlaceAtDevice", "air_speed_m_s", |order, value| {
-        order.place.air_speed_m_s = Some(value)
-    }),
+const FIELDS: [(&str, &str, Set); 27] = [
     ("PlaceAtDevice", "elevation_m", |order, value| {
-        order.place.elevation_m = Some(value)
+        order.site.elevation_m = Some(value)
+    }),
+    ("PlaceAtDevice", "air_speed_m_s", |order, value| {
+        at_device(order).air_speed_m_s = Some(value)
+    }),
+    ("PlaceAtDevice", "shortwave_exposure", |order, value| {
+        at_device(order).shortwave_exposure = Some(value)
+    }),
+    ("PlaceOutdoors", "shelter_factor", |order, value| {
+        outdoors(order).shelter_factor = Some(value)
+    }),
+    ("PlaceOutdoors", "air_speed_m_s", |order, value| {
+        outdoors(order).air_speed_m_s = Some(value)
+    }),
+    ("PlaceOutdoors", "shortwave_exposure", |order, value| {
+        outdoors(order).shortwave_exposure = Some(value)
+    }),
+    ("PlaceRoom", "heated_to_c", |order, value| {
+        room(order).heated_to_c = Some(value)
+    }),
+    ("PlaceRoom", "cooled_to_c", |order, value| {
+        room(order).heated_to_c = Some(-10.0);
+        room(order).cooled_to_c = Some(value)
+    }),
+    ("PlaceRoom", "memory_hours", |order, value| {
+        room(order).memory_hours = Some(value)
+    }),
+    ("PlaceRoom", "buffering_hours", |order, value| {
+        room(order).buffering_hours = Some(value)
+    }),
+    ("PlaceRoom", "humidified_to_pct", |order, value| {
+        room(order).humidified_to_pct = Some(value)
+    }),
+    ("PlaceRoom", "dehumidified_to_pct", |order, value| {
+        room(order).dehumidified_to_pct = Some(value)
+    }),
+    ("PlaceRoom", "air_speed_m_s", |order, value| {
+        room(order).air_speed_m_s = Some(value)
+    }),
+    ("PlaceRoom", "shortwave_exposure", |order, value| {
+        room(order).shortwave_exposure = Some(value)
+    }),
+    ("MoistureGivenExcess", "excess_g_m3", |order, value| {
+        room(order).moisture = Some(MoistureRule::GivenExcess { excess_g_m3: value })
+    }),
+    ("PlaceCase", "volume_l", |order, value| case(order).volume_l = value),
+    ("PlaceCase", "air_changes_per_hour", |order, value| {
+        case(order).air_changes_per_hour = value
+    }),
+    ("PlaceCase", "devices", |order, value| {
+        case(order).devices = Some(value as u32)
+    }),
+    ("PlaceCase", "other_vapour_g_per_h", |order, value| {
+        case(order).other_vapour_g_per_h = Some(value)
+    }),
+    ("PlaceCase", "warmer_by_k", |order, value| {
+        case(order).warmer_by_k = Some(value)
+    }),
+    ("PlaceCase", "air_speed_m_s", |order, value| {
+        case(order).air_speed_m_s = Some(value)
     }),
     ("InlineWeather", "max_gap_hours", |order, value| {
         order.weather_checks.max_gap_hours = Some(value as usize)

@@ -73,6 +73,7 @@ fn definitions() -> impl Strategy<Value = Definition> {
             uptake_g,
             critical_share,
             exchange_share,
+            absorptance: None,
         };
         (d.head.beak_area_cm2, d.tube.end_gap_mm) = (beak, gap);
         let given = d.cup.as_mut().unwrap();

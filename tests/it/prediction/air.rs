@@ -2,6 +2,7 @@
 
 use dipcast::model::air::Air;
 use dipcast::model::device::{Device, check, examples};
+use dipcast::model::place::{AtDevice, Place, PlacedAir, place_air};
 use dipcast::model::prediction::{Options, Prediction, PredictionError, PredictionRequest, predict};
 use dipcast::model::weather::{HourlySeries, SeriesReport, Stamp};
 
@@ -52,12 +53,25 @@ pub fn shelf() -> Device {
         .device
 }
 
+/// Where the readings were taken, in air of this speed.
+pub fn in_moving_air(air_speed_m_s: f64) -> Place {
+    Place::AtDevice(AtDevice {
+        air_speed_m_s: Some(air_speed_m_s),
+        shortwave_exposure: None,
+    })
+}
+
+/// The air at a place.
+pub fn placed(series: &HourlySeries, place: &Place) -> PlacedAir {
+    place_air(series, place, "place").expect("a sound place")
+}
+
 /// Runs a device in a room's moving air.
 pub fn run(device: &Device, series: &HourlySeries, options: Options) -> Result<Prediction, PredictionError> {
+    let air = placed(series, &in_moving_air(0.1));
     let request = PredictionRequest {
         device,
-        series,
-        air_speed_m_s: Some(0.1),
+        air: &air,
         options,
     };
     predict(&request, &|_, _| true)

@@ -6,15 +6,15 @@ use super::air::*;
 use dipcast::model::notes::Fault;
 use dipcast::model::prediction::*;
 
-fn faults(series_hours: usize, air_speed_m_s: f64, options: Options) -> Vec<Fault> {
+fn faults(series_hours: usize, options: Options) -> Vec<Fault> {
     let (device, mut series) = (shelf(), steady(series_hours, 22.0, 50.0));
     if series_hours == 1 {
         series.known[0] = false;
     }
+    let air = placed(&series, &in_moving_air(0.1));
     let request = PredictionRequest {
         device: &device,
-        series: &series,
-        air_speed_m_s: Some(air_speed_m_s),
+        air: &air,
         options,
     };
     match predict(&request, &|_, _| true) {
@@ -59,12 +59,8 @@ fn all_faults_come_at_once_with_their_paths() {
         spell_minutes: 1e9,
         ..Options::default()
     };
-    let found: Vec<(String, &str)> = faults(1, 21.0, options)
-        .into_iter()
-        .map(|f| (f.field, f.code))
-        .collect();
+    let found: Vec<(String, &str)> = faults(1, options).into_iter().map(|f| (f.field, f.code)).collect();
     let expected = [
-        ("place/air_speed_m_s", "above_maximum"),
         ("weather", "no_known_hour"),
         ("options/spell_minutes", "above_maximum"),
         ("options/attendance/delay_hours", "below_minimum"),
@@ -104,16 +100,16 @@ fn a_device_without_a_cup_has_no_level_to_begin_with() {
 
 #[test]
 fn an_empty_series_is_a_fault_not_a_panic() {
-    assert_eq!(faults(0, 0.1, plain())[0].code, "no_known_hour");
+    assert_eq!(faults(0, plain())[0].code, "no_known_hour");
 }
 
 #[test]
 fn a_caller_can_stop_a_run_and_is_told_how_far_it_is() {
     let (device, series) = (shelf(), steady(1000, 22.0, 50.0));
+    let air = placed(&series, &in_moving_air(0.1));
     let request = PredictionRequest {
         device: &device,
-        series: &series,
-        air_speed_m_s: None,
+        air: &air,
         options: Options {
             samples: 4,
             ..Options::default()

@@ -42,6 +42,9 @@ mirror! {
         /// Share of the felt's liquid exchanged with the cup in each dip. Default 0.05.
         #[serde(default, skip_serializing_if = "Option::is_none")]
         exchange_share: Option<f64>,
+        /// Share of short-wave radiation the wet felt absorbs; used by places with sun. Default 0.7.
+        #[serde(default, skip_serializing_if = "Option::is_none")]
+        absorptance: Option<f64>,
     }
 }
 

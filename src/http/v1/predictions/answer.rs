@@ -5,13 +5,14 @@ use utoipa::ToSchema;
 
 use super::hours::{CycleTrace, HourColumns};
 use super::periods::{HourOfDay, Period};
+use super::places::{ComparedPlace, PlaceReport};
 use super::spells::{StallSpell, StallSpellsSummary, Visit};
 use crate::http::v1::device::{DerivedFigures, Device, StallHumidity};
 use crate::http::v1::notes::{Assumption, Caution};
 use crate::http::v1::options::{DeviceState, Method};
 use crate::http::v1::provenance::FetchedWeather;
-use crate::service::PredictionReport;
 use crate::service::records::{Flag, ModelInfo, Stamp};
+use crate::service::{PlaceOutcome, PredictionReport};
 
 /// A prediction with all that went into it. Uncalibrated periods are right within a factor of 1.5 to 2; stall hours are
 /// to be read as a band.
@@ -47,6 +48,12 @@ pub struct PredictionAnswer {
     pub end_state: DeviceState,
     /// The device and what follows from it.
     pub device: DeviceReport,
+    /// Where it stands, and the air found there.
+    pub place: PlaceReport,
+    /// With `places`: each of them side by side, the first included.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub comparison: Option<Vec<ComparedPlace>>,
     /// What was read, filled and flagged.
     pub weather: WeatherReport,
     /// IANA name of the zone days, months and clock times were cut in.
@@ -70,7 +77,7 @@ pub struct DeviceReport {
     pub definition: Device,
     /// Figures that follow from it.
     pub derived: DerivedFigures,
-    /// Humidity at which it stops in settled air, at three air temperatures.
+    /// Humidity at which it stops in settled air of the place's mean air speed, at three air temperatures.
     pub stall_humidity: Vec<StallHumidity>,
 }
 
@@ -128,10 +135,16 @@ pub struct ModelReport {
 
 impl PredictionAnswer {
     /// The answer of a report; `upload` says whether the readings came in a file.
-    pub fn of(report: PredictionReport, upload: bool) -> Self {
+    ///
+    /// # Panics
+    /// If the report has no place, which the service never hands out.
+    pub fn of(mut report: PredictionReport, upload: bool) -> Self {
         let weather = WeatherReport::of(&report, upload);
-        let device = DeviceReport::of(&report);
-        let prediction = report.prediction;
+        let comparison = (report.is_comparison).then(|| report.outcomes.iter().map(Into::into).collect());
+        let outcome = report.outcomes.swap_remove(0);
+        let device = DeviceReport::of(&report, &outcome);
+        let place = PlaceReport::of(&outcome);
+        let prediction = outcome.prediction;
         let periods = |periods: Vec<_>| periods.into_iter().map(Period::from).collect();
         Self {
             summary: prediction.summary.into(),
@@ -145,22 +158,24 @@ impl PredictionAnswer {
             cycle_trace: prediction.cycle_trace.map(Into::into),
             end_state: prediction.end_state.into(),
             device,
+            place,
+            comparison,
             weather,
             time_zone: prediction.time_zone,
-            assumptions: report.assumptions.into_iter().map(Into::into).collect(),
-            cautions: report.cautions.into_iter().map(Into::into).collect(),
+            assumptions: outcome.assumptions.into_iter().map(Into::into).collect(),
+            cautions: outcome.cautions.into_iter().map(Into::into).collect(),
             model: prediction.model.into(),
         }
     }
 }
 
 impl DeviceReport {
-    fn of(report: &PredictionReport) -> Self {
+    fn of(report: &PredictionReport, outcome: &PlaceOutcome) -> Self {
         Self {
             example: report.example.clone(),
             definition: Device::from(report.definition.clone()).lit(report.lamp_hours.clone().map(Into::into)),
             derived: report.derived.into(),
-            stall_humidity: report.stall_points.iter().map(Into::into).collect(),
+            stall_humidity: outcome.stall_points.iter().map(Into::into).collect(),
         }
     }
 }

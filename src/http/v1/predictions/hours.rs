@@ -37,6 +37,20 @@ pub struct HourColumns {
     pub body_temp_c: Vec<Option<f64>>,
     /// Mean head temperature, vapour side [°C]; null in an unknown hour.
     pub head_temp_c: Vec<Option<f64>>,
+    /// Mean air temperature at the device [°C]; null in an unknown hour.
+    pub air_temp_c: Vec<Option<f64>>,
+    /// Relative humidity at the device [%], of the mean vapour at the mean temperature; null in an unknown hour.
+    pub air_relative_humidity_pct: Vec<Option<f64>>,
+    /// Mean air speed at the device [m/s]; null in an unknown hour.
+    pub air_speed_m_s: Vec<Option<f64>>,
+    /// Temperature outdoors at the time of the reading [°C]; absent where the readings are the air at the device.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub outdoor_temp_c: Option<Vec<Option<f64>>>,
+    /// Relative humidity outdoors at the time of the reading [%]; absent where the readings are the air at the device.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub outdoor_relative_humidity_pct: Option<Vec<Option<f64>>>,
 }
 
 /// Share of the hour in each state; they add up to 1.
@@ -100,6 +114,16 @@ pub struct HourRow {
     pub body_temp_c: Option<f64>,
     /// Mean head temperature, vapour side [°C]; empty in an unknown hour.
     pub head_temp_c: Option<f64>,
+    /// Mean air temperature at the device [°C]; empty in an unknown hour.
+    pub air_temp_c: Option<f64>,
+    /// Relative humidity at the device [%]; empty in an unknown hour.
+    pub air_relative_humidity_pct: Option<f64>,
+    /// Mean air speed at the device [m/s]; empty in an unknown hour.
+    pub air_speed_m_s: Option<f64>,
+    /// Temperature outdoors [°C]; empty where the readings are the air at the device.
+    pub outdoor_temp_c: Option<f64>,
+    /// Relative humidity outdoors [%]; empty where the readings are the air at the device.
+    pub outdoor_relative_humidity_pct: Option<f64>,
 }
 
 /// One cycle close up, in the air of one hour held steady.
@@ -159,6 +183,11 @@ impl From<records::HourColumns> for HourColumns {
             cup_drop_mm: all_rounded(record.cup_drop_mm),
             body_temp_c: known_rounded(record.body_temp_c),
             head_temp_c: known_rounded(record.head_temp_c),
+            air_temp_c: known_rounded(record.air_temp_c),
+            air_relative_humidity_pct: known_rounded(record.air_relative_humidity_pct),
+            air_speed_m_s: known_rounded(record.air_speed_m_s),
+            outdoor_temp_c: record.outdoor_temp_c.map(known_rounded),
+            outdoor_relative_humidity_pct: record.outdoor_relative_humidity_pct.map(known_rounded),
         }
     }
 }
@@ -167,6 +196,7 @@ impl HourRow {
     /// Hour `at` of the columns.
     pub fn of(columns: &records::HourColumns, at: usize) -> Self {
         let state = |state: HourState| rounded(columns.state_fractions[state as usize][at]);
+        let outdoors = |column: &Option<Vec<Option<f64>>>| column.as_ref().and_then(|column| column[at]).map(rounded);
         Self {
             time: instant(columns.time_unix_s[at]),
             cycles: rounded(columns.cycles[at]),
@@ -187,6 +217,11 @@ impl HourRow {
             cup_drop_mm: rounded(columns.cup_drop_mm[at]),
             body_temp_c: columns.body_temp_c[at].map(rounded),
             head_temp_c: columns.head_temp_c[at].map(rounded),
+            air_temp_c: columns.air_temp_c[at].map(rounded),
+            air_relative_humidity_pct: columns.air_relative_humidity_pct[at].map(rounded),
+            air_speed_m_s: columns.air_speed_m_s[at].map(rounded),
+            outdoor_temp_c: outdoors(&columns.outdoor_temp_c),
+            outdoor_relative_humidity_pct: outdoors(&columns.outdoor_relative_humidity_pct),
         }
     }
 }

@@ -5,6 +5,7 @@ mod faults;
 mod form;
 mod hours;
 mod periods;
+mod places;
 mod request;
 mod spells;
 mod table;
@@ -14,7 +15,8 @@ pub use faults::problem_of;
 pub use form::PredictionForm;
 pub use hours::{CycleTrace, HourColumns, HourRow, StateFractions, TracePoint};
 pub use periods::{Band, HourOfDay, Period, PeriodBands, StallHours, StallHoursBands, Substance, SubstanceBands};
-pub use request::{Place, PlaceAtDevice, PredictionRequest, SCHEMA_NAME};
+pub use places::{CaseReport, ComparedPlace, PlaceReport};
+pub use request::{PredictionRequest, SCHEMA_NAME};
 pub use spells::{HealedBy, HourState, StallSpell, StallSpellsSummary, Visit, VisitCause};
 pub use table::{csv_lines, json_lines, pieces};
 
@@ -40,9 +42,10 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 
 /// Predict cycles, stall hours and water
 ///
-/// One device in one place over one series of hourly readings, sent in the request, as a CSV file in a form, or fetched by
-/// coordinates. Answered at once up to 200,000 hours (method `averaged`) or 2,208 hours (`resolved`), and up to 6,400,000 hours times samples
-/// with bands; beyond it 422 `too_many_hours`. `text/csv` and `application/x-ndjson` give the hours alone.
+/// One device over one series of hourly readings, sent in the request, as a CSV file in a form, or fetched by coordinates;
+/// in one place, or in several that are compared. Answered at once up to 200,000 hours (method `averaged`) or 2,208 hours
+/// (`resolved`), and up to 6,400,000 hours times samples with bands, all places together; beyond it 422 `too_many_hours`.
+/// `text/csv` and `application/x-ndjson` give the hours of the (first) place alone.
 #[utoipa::path(
     post, path = "/v1/predictions", tag = "predictions", params(FormatQuery),
     request_body(

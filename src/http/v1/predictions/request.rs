@@ -7,9 +7,9 @@ use utoipa::ToSchema;
 use crate::http::error::{FaultItem, Problem, ProblemCode};
 use crate::http::v1::device::{Device, lamp_schedule};
 use crate::http::v1::options::PredictionOptions;
+use crate::http::v1::place::Place;
 use crate::http::v1::weather::{UploadedWeather, Weather};
-use crate::service;
-use crate::service::{DeviceChoice, PredictionOrder, WeatherChecks, WeatherSource};
+use crate::service::{DeviceChoice, PredictionOrder, Site, WeatherChecks, WeatherSource};
 
 /// Name of the request's schema in the description.
 pub const SCHEMA_NAME: &str = "PredictionRequest";
@@ -28,46 +28,16 @@ pub struct PredictionRequest {
     /// Where it stands. Default: at the readings, in an ordinary room's air speed.
     #[serde(default)]
     pub place: Option<Place>,
+    /// In place of `place`: several places of one site to compare. The first is answered in full, all of them side by
+    /// side in `comparison`.
+    #[serde(default)]
+    #[schema(min_items = 1, max_items = 16)]
+    pub places: Option<Vec<Place>>,
     /// The readings.
     pub weather: Weather,
     /// Everything that has a default.
     #[serde(default)]
     pub options: Option<PredictionOptions>,
-}
-
-/// Where the device stands.
-#[derive(Debug, Clone, Serialize, Deserialize, ToSchema)]
-#[serde(untagged)]
-#[schema(discriminator(property_name = "kind", mapping(
-    ("at_device" = "#/components/schemas/PlaceAtDevice"),
-)))]
-pub enum Place {
-    /// The readings are the air at the device.
-    AtDevice(PlaceAtDevice),
-}
-
-/// The readings are the air at the device.
-#[derive(Debug, Clone, Serialize, Deserialize, ToSchema)]
-#[serde(deny_unknown_fields)]
-pub struct PlaceAtDevice {
-    /// `at_device`
-    pub kind: AtDeviceKind,
-    /// Air speed at the device [m/s]: case 0.05, room 0.1, shop floor 0.2, doorway 0.4. Default 0.1.
-    #[serde(default)]
-    #[schema(minimum = 0, maximum = 20)]
-    pub air_speed_m_s: Option<f64>,
-    /// Elevation above mean sea level [m], for the pressure where none was read. Default 0.
-    #[serde(default)]
-    #[schema(minimum = -430, maximum = 9000)]
-    pub elevation_m: Option<f64>,
-}
-
-/// Tag of a place at the readings.
-#[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema)]
-pub enum AtDeviceKind {
-    /// `at_device`
-    #[serde(rename = "at_device")]
-    AtDevice,
 }
 
 impl PredictionRequest {
@@ -79,19 +49,21 @@ impl PredictionRequest {
         let lamp_hours = self.device.as_ref().and_then(lamp_schedule);
         let device = choice(self.device, self.device_example);
         let weather = source(self.weather, file);
-        match (device, weather) {
-            (Ok(device), Ok((weather, weather_checks))) => Ok(PredictionOrder {
+        let site = site(self.place, self.places);
+        match (device, weather, site) {
+            (Ok(device), Ok((weather, weather_checks)), Ok(site)) => Ok(PredictionOrder {
                 device,
-                place: place(self.place),
+                site,
                 weather,
                 weather_checks,
                 options: self.options.unwrap_or_default().record(lamp_hours),
             }),
-            (device, weather) => {
+            (device, weather, site) => {
                 let faults = device
                     .err()
                     .into_iter()
                     .chain(weather.err().into_iter().flatten())
+                    .chain(site.err())
                     .collect();
                 Err(Problem::with_faults(ProblemCode::InvalidRequest, faults))
             }
@@ -142,12 +114,29 @@ fn uploaded(upload: UploadedWeather, file: Bytes) -> (WeatherSource, WeatherChec
     (WeatherSource::Csv { file, layout }, checks)
 }
 
-fn place(place: Option<Place>) -> service::Place {
-    match place {
-        Some(Place::AtDevice(at)) => service::Place {
-            air_speed_m_s: at.air_speed_m_s,
-            elevation_m: at.elevation_m,
-        },
-        None => service::Place::default(),
+fn site(place: Option<Place>, places: Option<Vec<Place>>) -> Result<Site, FaultItem> {
+    let is_comparison = places.is_some();
+    let places = match (place, places) {
+        (Some(_), Some(_)) => {
+            let detail = "give place or places, not both; found both";
+            return Err(FaultItem::at("/places", "place_and_places", detail));
+        }
+        (Some(place), None) => vec![place],
+        (None, Some(places)) => places,
+        (None, None) => return Ok(Site::default()),
+    };
+    let elevations: Vec<f64> = places.iter().flat_map(Place::elevations_m).collect();
+    if let Some(other) = elevations.iter().find(|other| **other != elevations[0]) {
+        let detail = format!(
+            "one site has one elevation; found elevation_m {} and {other}. Give it once, or ask for each site in its own request",
+            elevations[0]
+        );
+        let pointer = if is_comparison { "/places" } else { "/place" };
+        return Err(FaultItem::at(pointer, "two_elevations", detail));
     }
+    Ok(Site {
+        elevation_m: elevations.first().copied(),
+        places: places.into_iter().map(Into::into).collect(),
+        is_comparison,
+    })
 }

@@ -11,7 +11,8 @@ const HOURS_A_PIECE: usize = 500;
 
 /// The hours piece by piece, each written when it is asked for: a reader that goes away costs no more.
 pub fn pieces(report: PredictionReport, write: Writer) -> impl Iterator<Item = Vec<u8>> {
-    let hours = report.prediction.hours.unwrap_or_default();
+    let first = report.outcomes.into_iter().next();
+    let hours = first.and_then(|outcome| outcome.prediction.hours).unwrap_or_default();
     let count = hours.time_unix_s.len();
     let starts = (0..count.max(1)).step_by(HOURS_A_PIECE);
     starts.map(move |start| write(&hours, start..(start + HOURS_A_PIECE).min(count)))
@@ -76,6 +77,11 @@ mod tests {
             cup_drop_mm: two(),
             body_temp_c: vec![Some(20.0), None],
             head_temp_c: vec![Some(19.5), None],
+            air_temp_c: vec![Some(20.5), None],
+            air_relative_humidity_pct: vec![Some(50.0), None],
+            air_speed_m_s: vec![Some(0.1), None],
+            outdoor_temp_c: None,
+            outdoor_relative_humidity_pct: None,
         }
     }
 
@@ -85,8 +91,12 @@ mod tests {
         let lines: Vec<&str> = text.split("\r\n").collect();
         assert_eq!(lines.len(), 4, "{text:?}");
         assert!(lines[0].starts_with("time,cycles,stall_fraction,running_fraction"));
-        assert!(lines[1].starts_with("1970-01-01T00:00:00Z,0.25,") && lines[1].ends_with(",20.0,19.5"));
-        assert!(lines[2].ends_with(",-0.5,,"), "unknown cells are empty: {}", lines[2]);
+        assert!(lines[1].starts_with("1970-01-01T00:00:00Z,0.25,") && lines[1].ends_with(",20.0,19.5,20.5,50.0,0.1,,"));
+        assert!(
+            lines[2].ends_with(",-0.5,,,,,,,"),
+            "unknown cells are empty: {}",
+            lines[2]
+        );
     }
 
     #[test]
