@@ -138,7 +138,7 @@ pub struct PlaceRoom {
     #[serde(default, skip_serializing_if = "Option::is_none")]
     #[schema(minimum = 0, maximum = 720)]
     pub memory_hours: Option<f64>,
-    /// Where the room's own vapour comes from. Default `field_survey`.
+    /// Where the room's own vapour comes from. Default `iso_13788`, class 2.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub moisture: Option<Moisture>,
     /// Walls and furniture take up and give back vapour with this time constant [h]. Default 0: none.
