@@ -1,6 +1,7 @@
 //! One file a resource, shaped like the URLs.
 
 mod access;
+mod places;
 mod predictions;
 mod problems;
 mod service;
