@@ -1,5 +1,6 @@
 //! From the weather outside to the air at the device.
 
+mod any;
 mod cases;
 mod house;
 mod outside;

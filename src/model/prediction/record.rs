@@ -49,9 +49,9 @@ impl HourAir {
         }
     }
 
-    /// Relative humidity of the mean vapour at the mean temperature [%].
+    /// Relative humidity of the mean vapour at the mean temperature [%]; the curve is hollow, so a mean can lie a hair above.
     pub(super) fn relative_humidity_pct(&self) -> f64 {
-        100.0 * self.vapour_pa / saturation_pressure_pa(self.temp_k)
+        (100.0 * self.vapour_pa / saturation_pressure_pa(self.temp_k)).min(100.0)
     }
 }
 
