@@ -31,7 +31,8 @@ release_build() { cargo build --quiet --release --locked; }
 # openapi_document PATH VERSION
 openapi_document() {
     curl --silent --fail --output target/steps/openapi.json "$base/$1" \
-        && "$venv/bin/openapi-spec-validator" --schema "$2" target/steps/openapi.json
+        && "$venv/bin/openapi-spec-validator" --schema "$2" target/steps/openapi.json \
+        && "$venv/bin/python" tests/steps/examples.py target/steps/openapi.json
 }
 
 # fuzz_the_document OPTION...: how much is asked; all the rest is fixed.

@@ -1,10 +1,12 @@
 //! What a value stands for is carried from the reading to the hour, and honoured there.
 
 use dipcast::http::v1::weather::InlineWeather;
+use dipcast::model::weather::zone::{Zone, wall_clock_text};
 use dipcast::model::weather::{HourlySeries, Label, RawReadings, RegulariseOptions, Stamp, regularise};
 use serde_json::{Value, json};
 
 use super::{answered, room};
+use crate::support::{post_form, upload};
 
 const START_UNIX_S: i64 = 1_781_049_600; // 2026-06-10T00:00:00Z
 
@@ -172,4 +174,71 @@ async fn instants_and_means_of_the_same_air_agree() {
     };
     assert!(worst(&means) < 0.02, "{}", worst(&means));
     assert!(worst(&mistaken) > 0.05, "{}", worst(&mistaken));
+}
+
+/// Hourly readings of an ordinary room as a file in local time.
+fn local_file(zone: &str, start_unix_s: i64, hours: i64) -> (String, Value) {
+    let clock = Zone::parse(zone).unwrap();
+    let mut file = String::from("Time;Temp;RH\n");
+    for hour in 0..hours {
+        let wall = wall_clock_text(clock.wall_clock_s(start_unix_s + 3600 * hour));
+        file += &format!("{wall};{};{}\n", 20.0 + 0.1 * (hour % 24) as f64, 40 + hour % 24);
+    }
+    let layout = json!({
+        "dialect": {"delimiter": ";"},
+        "time": {"columns": ["Time"], "format": "%Y-%m-%d %H:%M", "zone": zone, "label": "mean_of_preceding_hour"},
+        "columns": {"air_temperature": {"column": "Temp", "unit": "Cel"}, "relative_humidity": {"column": "RH", "unit": "%"}},
+    });
+    (file, layout)
+}
+
+/// A file in local time and the same readings sent as instants of UTC are one and the same series, also where the clock
+/// shows an hour twice, leaves one out, or leaves a day out.
+#[tokio::test]
+async fn a_file_in_local_time_gives_the_hours_of_utc() {
+    for (zone, start) in [
+        ("America/New_York", "2026-10-31T00:00:00Z"),
+        ("America/New_York", "2026-03-07T00:00:00Z"),
+        ("Africa/Casablanca", "2026-02-14T00:00:00Z"),
+        ("Africa/Casablanca", "2026-03-21T00:00:00Z"),
+        ("Pacific/Apia", "2011-12-29T00:00:00Z"),
+        ("Asia/Kolkata", "2026-03-07T00:30:00Z"),
+        ("Australia/Adelaide", "2026-04-04T00:30:00Z"),
+    ] {
+        let start_unix_s = start.parse::<chrono::DateTime<chrono::Utc>>().unwrap().timestamp();
+        let (file, layout) = local_file(zone, start_unix_s, 72);
+        let mut request = upload(layout);
+        request["options"]["time_zone"] = zone.into();
+        let parts = [("request", request.to_string()), ("weather", file)];
+        let parts: Vec<(&str, &[u8])> = parts.iter().map(|(name, text)| (*name, text.as_bytes())).collect();
+        let answer = post_form(&super::SERVICE, "/v1/predictions", &parts).await;
+        assert_eq!(answer.status, 200, "{zone} {start}: {}", answer.text());
+
+        let mut inline = room(start, 72, zone);
+        let column = |value: fn(i64) -> f64| (0..72).map(value).collect::<Vec<f64>>();
+        inline["weather"]["air_temperature_c"] = json!(column(|hour| 20.0 + 0.1 * (hour % 24) as f64));
+        inline["weather"]["relative_humidity_pct"] = json!(column(|hour| 40.0 + (hour % 24) as f64));
+        inline["weather"]["label"] = "mean_of_preceding_hour".into();
+        let (by_file, by_instants) = (answer.json(), answered(&inline).await);
+        assert_eq!(by_file["hours"]["time"], by_instants["hours"]["time"], "{zone} {start}");
+        assert_eq!(
+            by_file["hours"]["cycles"], by_instants["hours"]["cycles"],
+            "{zone} {start}"
+        );
+    }
+}
+
+/// Lord Howe repeats half an hour, of which an hourly file holds one reading: it cannot be told which, so it is said.
+#[tokio::test]
+async fn a_single_reading_in_a_repeated_half_hour_is_flagged() {
+    let start_unix_s = 1_775_260_800; // 2026-04-04T00:00:00Z
+    let (file, layout) = local_file("Australia/Lord_Howe", start_unix_s, 72);
+    let request = upload(layout).to_string();
+    let parts: [(&str, &[u8]); 2] = [("request", request.as_bytes()), ("weather", file.as_bytes())];
+    let answer = post_form(&super::SERVICE, "/v1/predictions", &parts).await.json();
+    let flags = answer["weather"]["flags"].as_array().unwrap();
+    let said = flags.iter().find(|flag| flag["code"] == "repeated_hour_once").unwrap();
+    // Line 17 holds the reading of 15:00Z on the first day: 01:30 there, for the second time.
+    assert_eq!(said["rows"], json!([17]));
+    assert_eq!(answer["hours"]["time"].as_array().unwrap().len(), 72);
 }
