@@ -107,6 +107,39 @@ async fn places_are_compared_side_by_side_and_each_is_what_it_is_alone() {
 }
 
 #[tokio::test]
+async fn rows_of_compared_places_name_their_place() {
+    let places = json!([room(json!({"rule": "none"})), {"kind": "outdoors"}, {"kind": "room", "name": "=1+1"}]);
+    let request = json!({
+        "device_example": "shelf-180", "places": places,
+        "weather": {
+            "kind": "inline", "start": "2026-01-01T00:00:00Z",
+            "air_temperature_c": [0, 0], "relative_humidity_pct": [80, 80]
+        }
+    });
+    let answer = post_json(&service(), "/v1/predictions?format=csv", request.to_string()).await;
+    assert_eq!(answer.status, 200, "{}", answer.text());
+    let text = answer.text();
+    let lines: Vec<&str> = text.split("\r\n").collect();
+    assert_eq!(lines.len(), 8, "{text}");
+    assert!(lines[0].starts_with("place,time,cycles,"), "{}", lines[0]);
+    let starts = [
+        "shop,2026-01-01T00:",
+        "shop,2026-01-01T01:",
+        "places/1,2026",
+        "places/1,2026",
+        "'=1+1,",
+        "'=1+1,",
+    ];
+    assert!(
+        lines[1..]
+            .iter()
+            .zip(starts)
+            .all(|(line, start)| line.starts_with(start)),
+        "{text}"
+    );
+}
+
+#[tokio::test]
 async fn the_example_of_places_is_answered() {
     let answer = post_json(&service(), "/v1/predictions", example("places.json")).await;
     assert_eq!(answer.status, 200, "{}", answer.text());

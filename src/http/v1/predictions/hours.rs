@@ -75,6 +75,10 @@ pub struct StateFractions {
 /// One hour: a row of the CSV, a line of the NDJSON.
 #[derive(Debug, Serialize, ToSchema)]
 pub struct HourRow {
+    /// Name of the place, or `places/1` for the second without a name; only where places are compared.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    #[schema(nullable = false)]
+    pub place: Option<String>,
     /// Start of the hour.
     #[schema(format = DateTime)]
     pub time: String,
@@ -198,6 +202,7 @@ impl HourRow {
         let state = |state: HourState| rounded(columns.state_fractions[state as usize][at]);
         let outdoors = |column: &Option<Vec<Option<f64>>>| column.as_ref().and_then(|column| column[at]).map(rounded);
         Self {
+            place: None,
             time: instant(columns.time_unix_s[at]),
             cycles: rounded(columns.cycles[at]),
             stall_fraction: rounded(columns.stall_fraction[at]),

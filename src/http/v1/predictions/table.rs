@@ -9,27 +9,46 @@ use crate::service::records::HourColumns;
 /// Hours written at a time.
 const HOURS_A_PIECE: usize = 500;
 
-/// The hours piece by piece, each written when it is asked for: a reader that goes away costs no more.
+/// The hours piece by piece, each written when it is asked for: a reader that goes away costs no more. Compared places
+/// follow one another, each row with the name of its place.
 pub fn pieces(report: PredictionReport, write: Writer) -> impl Iterator<Item = Vec<u8>> {
-    let first = report.outcomes.into_iter().next();
-    let hours = first.and_then(|outcome| outcome.prediction.hours).unwrap_or_default();
-    let count = hours.time_unix_s.len();
-    let starts = (0..count.max(1)).step_by(HOURS_A_PIECE);
-    starts.map(move |start| write(&hours, start..(start + HOURS_A_PIECE).min(count)))
+    let is_comparison = report.is_comparison;
+    let places = report.outcomes.into_iter().enumerate();
+    places.flat_map(move |(number, outcome)| {
+        let name = outcome.place.name.unwrap_or_else(|| format!("places/{number}"));
+        let hours = PlaceHours {
+            place: is_comparison.then_some(name),
+            is_first: number == 0,
+            columns: outcome.prediction.hours.unwrap_or_default(),
+        };
+        let count = hours.columns.time_unix_s.len();
+        let starts = (0..count.max(1)).step_by(HOURS_A_PIECE);
+        starts.map(move |start| write(&hours, start..(start + HOURS_A_PIECE).min(count)))
+    })
+}
+
+/// The hours of one place.
+pub struct PlaceHours {
+    /// Its name, where places are compared.
+    place: Option<String>,
+    /// It comes first.
+    is_first: bool,
+    columns: HourColumns,
 }
 
 /// Writes some of the hours.
-pub type Writer = fn(&HourColumns, Range<usize>) -> Vec<u8>;
+pub type Writer = fn(&PlaceHours, Range<usize>) -> Vec<u8>;
 
 /// Hours as CSV lines; the first piece has the header.
-pub fn csv_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
+pub fn csv_lines(hours: &PlaceHours, range: Range<usize>) -> Vec<u8> {
     let mut writer = csv::WriterBuilder::new()
-        .has_headers(range.start == 0)
+        .has_headers(hours.is_first && range.start == 0)
         .terminator(csv::Terminator::CRLF)
         .from_writer(Vec::new());
     for at in range {
-        let mut row = HourRow::of(hours, at);
+        let mut row = HourRow::of(&hours.columns, at);
         row.time = harmless(row.time);
+        row.place = hours.place.clone().map(harmless);
         writer
             .serialize(row)
             .expect("writing plain fields to memory does not fail");
@@ -38,11 +57,12 @@ pub fn csv_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
 }
 
 /// Hours as one JSON object a line.
-pub fn json_lines(hours: &HourColumns, range: Range<usize>) -> Vec<u8> {
+pub fn json_lines(hours: &PlaceHours, range: Range<usize>) -> Vec<u8> {
     let mut text = Vec::new();
     for at in range {
-        serde_json::to_writer(&mut text, &HourRow::of(hours, at))
-            .expect("writing plain fields to memory does not fail");
+        let mut row = HourRow::of(&hours.columns, at);
+        row.place.clone_from(&hours.place);
+        serde_json::to_writer(&mut text, &row).expect("writing plain fields to memory does not fail");
         text.push(b'\n');
     }
     text
@@ -61,9 +81,9 @@ fn harmless(text: String) -> String {
 mod tests {
     use super::*;
 
-    fn two_hours() -> HourColumns {
+    fn two_hours() -> PlaceHours {
         let two = || vec![0.25, -0.5];
-        HourColumns {
+        let columns = HourColumns {
             time_unix_s: vec![0, 3600],
             cycles: two(),
             stall_fraction: two(),
@@ -82,6 +102,11 @@ mod tests {
             air_speed_m_s: vec![Some(0.1), None],
             outdoor_temp_c: None,
             outdoor_relative_humidity_pct: None,
+        };
+        PlaceHours {
+            place: None,
+            is_first: true,
+            columns,
         }
     }
 
