@@ -2,6 +2,7 @@
 
 mod demo;
 mod healthcheck;
+mod inspect;
 mod openapi;
 mod predict;
 mod serve;
@@ -24,6 +25,8 @@ enum Command {
     Serve(serve::Serve),
     /// Predict without a server: request and readings from files.
     Predict(predict::Predict),
+    /// Look at a weather file: how it is read, and what has to be asked.
+    Inspect(inspect::Inspect),
     /// Print the API description.
     Openapi(openapi::OpenApi),
     /// Ask a running service whether it is ready; exit 0 if so.
@@ -35,6 +38,7 @@ pub fn run(cli: Cli) -> Result<(), String> {
     match cli.command {
         Command::Serve(serve) => serve::run(&serve),
         Command::Predict(predict) => predict::run(&predict),
+        Command::Inspect(inspect) => inspect::run(&inspect),
         Command::Openapi(openapi) => openapi::run(&openapi),
         Command::Healthcheck(healthcheck) => healthcheck::run(&healthcheck),
     }

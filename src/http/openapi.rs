@@ -29,6 +29,7 @@ pub const API_VERSION: &str = "1.0.0";
     servers((url = "/", description = "This service.")),
     tags(
         (name = "predictions", description = "A device and an hourly series in; cycles, stall hours and water out."),
+        (name = "weather", description = "Weather files: how they are read, and what has to be asked."),
         (name = "tables", description = "What stands behind the model: fluids, evaporants, example devices."),
         (name = "service", description = "Health, metrics and pages."),
     ),

@@ -7,13 +7,14 @@ use utoipa_axum::routes;
 
 use super::app::App;
 use super::error::{Problem, ProblemCode};
-use super::v1::{evaporants, example_devices, fluids, predictions};
+use super::v1::{evaporants, example_devices, fluids, inspections, predictions};
 use super::{health, middleware, openapi, pages};
 use crate::config::Config;
 
 fn routes() -> OpenApiRouter<App> {
     OpenApiRouter::with_openapi(openapi::head())
         .routes(routes!(predictions::create_prediction))
+        .routes(routes!(inspections::create_weather_inspection))
         .routes(routes!(fluids::list_fluids))
         .routes(routes!(evaporants::list_evaporants))
         .routes(routes!(example_devices::list_example_devices))

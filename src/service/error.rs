@@ -88,9 +88,8 @@ pub enum WeatherTrouble {
 /// Sorts a weather fault by its code.
 pub fn trouble(fault: &WeatherFault) -> WeatherTrouble {
     match fault.code {
-        "empty_file" | "no_readings" | "not_csv" | "damaged_gzip" | "wrong_encoding" | "open_quote" | "line_ends" => {
-            WeatherTrouble::Unreadable
-        }
+        "empty_file" | "no_readings" | "no_table" | "not_csv" | "damaged_gzip" | "wrong_encoding" | "open_quote"
+        | "line_ends" => WeatherTrouble::Unreadable,
         "too_large" | "compression_bomb" | "too_many_rows" | "row_too_long" | "too_many_cells" => {
             WeatherTrouble::TooLarge
         }

@@ -5,6 +5,7 @@
 
 mod clock;
 mod error;
+mod inspect;
 mod order;
 mod places;
 /// The records of the rooms below that callers of the service fill in and read.
@@ -16,6 +17,7 @@ mod weather;
 
 pub use clock::Clock;
 pub use error::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
+pub use inspect::{Inspected, Inspection, Told, inspect};
 pub use order::{DeviceChoice, NamedPlace, PredictionOrder, Site, WeatherChecks, WeatherSource};
 pub use places::Places;
 pub use report::{PlaceOutcome, PredictionReport, StallPoint};

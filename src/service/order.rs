@@ -2,7 +2,7 @@
 
 use bytes::Bytes;
 
-use super::records::{Definition, FetchedWeather, Layout, Options, Place, RawReadings};
+use super::records::{Definition, FetchedWeather, Hints, Layout, Options, Place, RawReadings};
 use super::weather::EndpointOrder;
 
 /// One device over one series of readings, in one place or in several that are compared.
@@ -75,12 +75,14 @@ impl Site {
 pub enum WeatherSource {
     /// Given with the order.
     Readings(Box<RawReadings>),
-    /// A CSV file, gzipped or not; without a layout the documented form is expected.
+    /// A CSV file, gzipped or not.
     Csv {
         /// The file.
         file: Bytes,
-        /// What its columns mean.
+        /// What its columns mean; without one it is found out.
         layout: Option<Box<Layout>>,
+        /// What is said about the file where it is found out.
+        hints: Box<Hints>,
     },
     /// To be fetched by coordinates.
     Endpoint(Box<EndpointOrder>),

@@ -1,7 +1,8 @@
 //! What travels through the service unchanged: defined below, named here, so that callers need no room but this one.
 
 pub use crate::intake::csv::{
-    Ambiguous, Clock, ColumnMapping, Columns, Dialect, LabelName, Layout, Nonexistent, OWN_HEADER, RowFilter,
+    Ambiguous, Candidate, Clock, ColumnFinding, ColumnHint, ColumnHints, ColumnMapping, Columns, Confidence, Detection,
+    Dialect, FixedColumn, Hints, LabelName, Layout, LongForm, Nonexistent, OWN_HEADER, Question, Role, RowFilter,
     TimeLayout,
 };
 pub use crate::intake::endpoints::{Coordinates, Facts, FetchedWeather, Nature, Provenance, Stretch};

@@ -212,12 +212,15 @@ fn of_fetched(fault: WeatherFault) -> WeatherFault {
 fn readings(source: &WeatherSource, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
     match source {
         WeatherSource::Readings(readings) => Ok(readings.as_ref().clone()),
-        WeatherSource::Csv { file, layout } => {
+        WeatherSource::Csv { file, layout, hints } => {
             let limits = csv::Limits {
                 max_decompressed_bytes: limits.decompressed_bytes as u64,
                 ..csv::Limits::default()
             };
-            csv::read(file, layout.as_deref(), &limits)
+            match layout {
+                Some(layout) => csv::read(file, Some(layout), &limits),
+                None => csv::read_with_hints(file, hints, &limits),
+            }
         }
         WeatherSource::Fetched(fetched) => Ok(fetched.readings.clone()),
         WeatherSource::Endpoint(endpoint) => {

@@ -1,5 +1,8 @@
 //! CSV files read as they should be: the committed real series, and one small file in many dresses.
 
+mod layouts;
+mod real_files;
+
 use std::io::Write;
 
 use dipcast::intake::csv::{Layout, Limits, OWN_HEADER, read};

@@ -5,7 +5,7 @@ use axum::http::{Request, header};
 use dipcast::http::router;
 use serde_json::Value;
 
-use crate::support::{Answer, ask, example, post_json, service};
+use crate::support::{Answer, ask, example, post_form, post_json, service};
 
 /// The last digits are there to be read: other tests hold them.
 const TOLERANCE: f64 = 1e-3;
@@ -44,6 +44,17 @@ async fn the_answer_in_lines_is_the_present_one() {
         text.lines().map(|line| line.split(',').map(cell).collect()).collect()
     };
     assert_alike("", &serde_json::json!(cells(&table)), &serde_json::json!(cells(&shown)));
+}
+
+#[tokio::test]
+async fn the_inspection_is_the_present_one() {
+    let file = example("shop-logger.csv");
+    let parts = [("weather", file.as_bytes())];
+    let answer = post_form(&service(), "/v1/weather/inspections", &parts).await.json();
+    let shown: Value = serde_json::from_str(&example("answers/inspection.json")).unwrap();
+    let mend =
+        "mend it with: dipcast inspect openapi/examples/shop-logger.csv > openapi/examples/answers/inspection.json";
+    assert_eq!(answer, shown, "{mend}");
 }
 
 #[tokio::test]

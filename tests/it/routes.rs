@@ -2,6 +2,7 @@
 
 mod access;
 mod places;
+mod inspections;
 mod predictions;
 mod problems;
 mod service;

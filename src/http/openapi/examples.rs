@@ -50,6 +50,15 @@ pub(super) fn add(document: &mut OpenApi) {
             add_answer(prediction, media_type, "The answer to the shortest request", value);
         }
     }
+    if let Some(inspection) = post(document, "/v1/weather/inspections") {
+        let text = include_str!("../../../openapi/examples/answers/inspection.json");
+        add_answer(
+            inspection,
+            "application/json",
+            "A logger in a form of its own",
+            parsed(text),
+        );
+    }
     let tables = [
         ("/v1/fluids", first_of(json!(FluidList::all()))),
         ("/v1/evaporants", first_of(json!(EvaporantList::all()))),

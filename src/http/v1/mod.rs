@@ -32,6 +32,10 @@ pub mod evaporants;
 pub mod example_devices;
 /// `GET /v1/fluids`
 pub mod fluids;
+/// What a sender can say about a CSV file.
+pub mod hints;
+/// `POST /v1/weather/inspections`
+pub mod inspections;
 /// What a CSV file's columns mean.
 pub mod layout;
 /// Named rules for a room's own vapour.

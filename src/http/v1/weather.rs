@@ -3,6 +3,7 @@
 use serde::{Deserialize, Serialize};
 use utoipa::ToSchema;
 
+use super::hints::CsvHints;
 use super::layout::CsvLayout;
 use super::weather_endpoint::EndpointWeather;
 use crate::http::error::FaultItem;
@@ -81,9 +82,12 @@ pub struct InlineWeather {
 pub struct UploadedWeather {
     /// `upload`
     pub kind: UploadKind,
-    /// What the columns mean. Default: the documented form.
+    /// What the columns mean. Default: found out by looking; what cannot be told is asked for.
     #[serde(default)]
     pub layout: Option<CsvLayout>,
+    /// Answers to what cannot be told by looking; not beside a `layout`.
+    #[serde(default)]
+    pub hints: Option<CsvHints>,
     /// Longest gap that is interpolated [h]. Default 3.
     #[serde(default)]
     #[schema(maximum = 24)]
@@ -131,6 +135,16 @@ impl From<ReadingLabel> for LabelName {
             ReadingLabel::Instant => LabelName::Instant,
             ReadingLabel::MeanOfFollowingHour => LabelName::MeanOfFollowingHour,
             ReadingLabel::MeanOfPrecedingHour => LabelName::MeanOfPrecedingHour,
+        }
+    }
+}
+
+impl From<LabelName> for ReadingLabel {
+    fn from(record: LabelName) -> Self {
+        match record {
+            LabelName::Instant => Self::Instant,
+            LabelName::MeanOfFollowingHour => Self::MeanOfFollowingHour,
+            LabelName::MeanOfPrecedingHour => Self::MeanOfPrecedingHour,
         }
     }
 }

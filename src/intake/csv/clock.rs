@@ -15,6 +15,8 @@ const DAY_S: i64 = 86_400;
 pub(super) struct WallClock {
     zone: Option<Zone>,
     counts_to_24: bool,
+    /// Hours 0 to 23, and 24:00 for the end of a day.
+    ends_with_24: bool,
     year: Option<i64>,
     ambiguous: Ambiguous,
     nonexistent: Nonexistent,
@@ -29,6 +31,7 @@ impl WallClock {
         Self {
             zone: time.zone.as_deref().and_then(|name| Zone::parse(name).ok()),
             counts_to_24: time.clock == Some(Clock::From1To24),
+            ends_with_24: time.clock == Some(Clock::HourMinute),
             year: time.year,
             ambiguous: time.ambiguous,
             nonexistent: time.nonexistent,
@@ -43,6 +46,11 @@ impl WallClock {
         if let Some(offset_s) = shown.offset_s {
             return Ok(wall_s - offset_s);
         }
+        self.of_wall_s(wall_s, row)
+    }
+
+    /// The instant of a wall clock [s] without an offset of its own.
+    pub(super) fn of_wall_s(&mut self, wall_s: i64, row: usize) -> Result<i64, Refusal> {
         let Some(zone) = &self.zone else {
             let detail = "the time has no offset and no zone is given; send layout.time.zone (UTC, an offset such as +01:00, \
                           or an IANA name such as Europe/Oslo)";
@@ -87,6 +95,7 @@ impl WallClock {
         }
         match (self.counts_to_24, hour) {
             (false, 0..=23) | (true, 1..=24) => Ok(hour),
+            (false, 24) if self.ends_with_24 && shown.minute == 0 => Ok(hour),
             (false, 24) => Err((
                 "bad_time",
                 "expected an hour from 0 to 23; found 24. If hours run from 1 to 24, send \
@@ -140,7 +149,7 @@ fn twice(zone: &Zone, wall_s: i64) -> Refusal {
 fn never(zone: &Zone, wall_s: i64, offset_before_s: i64) -> Refusal {
     let detail = format!(
         "{} does not exist in {}: the clock was put forward over it, so what wrote this file does not switch to summer time. \
-         Send its fixed offset as layout.time.zone, probably {:?}",
+         Send its fixed offset as layout.time.zone, or \"hints\": {{\"zone\":\"{}\"}}",
         wall_clock_text(wall_s),
         zone.name(),
         offset_name(offset_before_s)

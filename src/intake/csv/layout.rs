@@ -22,6 +22,35 @@ pub struct Layout {
     /// Read only the rows in which this holds.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub rows: Option<RowFilter>,
+    /// One value a row, named beside it: what loggers write that note changes only.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub long_form: Option<LongForm>,
+}
+
+/// Files with one value a row and a column that names what was read. The columns of a [`ColumnMapping`] are then names in
+/// `name_column`. A value holds until the next one of its name.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct LongForm {
+    /// The column that names what was read.
+    pub name_column: String,
+    /// The column of the values.
+    pub value_column: String,
+    /// Longest time a value holds without being repeated [h]; by default a day.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub hold_hours: Option<f64>,
+}
+
+/// A column of a file without delimiters.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct FixedColumn {
+    /// What the rest of the layout calls it.
+    pub name: String,
+    /// Place of its first character in the line, from 1.
+    pub start: usize,
+    /// Number of characters.
+    pub width: usize,
 }
 
 /// How the text is cut into cells.
@@ -35,6 +64,9 @@ pub struct Dialect {
     pub delimiter: String,
     /// Decimal sign: `.` or `,`.
     pub decimal: String,
+    /// Sign between groups of three digits, which is read over: `.`, `,`, `'` or a space.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub thousands: Option<String>,
     /// Header rows; the first of them names the columns. 0: columns are named by place, `#1`, `#2`.
     pub header_rows: usize,
     /// Lines before the header.
@@ -42,6 +74,9 @@ pub struct Dialect {
     /// Lines that start with this character are left out.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub comment: Option<String>,
+    /// Columns by the place of their characters, for files without delimiters; such files have no header.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub fixed_width: Vec<FixedColumn>,
 }
 
 impl Default for Dialect {
@@ -50,9 +85,11 @@ impl Default for Dialect {
             encoding: "utf-8".into(),
             delimiter: ",".into(),
             decimal: ".".into(),
+            thousands: None,
             header_rows: 1,
             skip_rows: 0,
             comment: None,
+            fixed_width: Vec::new(),
         }
     }
 }
@@ -63,8 +100,8 @@ impl Default for Dialect {
 pub struct TimeLayout {
     /// Columns that hold the time, joined by one space before they are read.
     pub columns: Vec<String>,
-    /// `rfc3339` (offset optional, `T` or a space), `unix_s`, `unix_ms`, or a pattern of `%Y %y %m %d %j %b %H %I %M %S %p
-    /// %z`.
+    /// `rfc3339` (offset optional, `T` or a space), `unix_s`, `unix_ms`, `spreadsheet_days` (days since 1899-12-30), or a
+    /// pattern of `%Y %y %m %d %j %b %H %I %M %S %p %z`.
     #[serde(default = "rfc3339")]
     pub format: String,
     /// Zone of cells without an offset: `UTC`, `+01:00`, or an IANA name.
@@ -76,6 +113,9 @@ pub struct TimeLayout {
     /// What the time says about the value; by default `instant`.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub label: Option<LabelName>,
+    /// What the time says about the irradiance, where that differs from the rest.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub shortwave_label: Option<LabelName>,
     /// The hour a clock shows twice in autumn.
     #[serde(default)]
     pub ambiguous: Ambiguous,
@@ -96,6 +136,7 @@ impl TimeLayout {
             zone: None,
             clock: None,
             label: None,
+            shortwave_label: None,
             ambiguous: Ambiguous::default(),
             nonexistent: Nonexistent::default(),
             year: None,
@@ -119,6 +160,9 @@ pub enum Clock {
     /// 12-hour clock with `%p`.
     #[serde(rename = "am_pm")]
     AmPm,
+    /// Hours and minutes as one whole number, 0 to 2400: `%H` holds both.
+    #[serde(rename = "hhmm")]
+    HourMinute,
 }
 
 /// What the time beside a value says about it.
@@ -169,7 +213,7 @@ pub enum Nonexistent {
     Unmoved,
 }
 
-/// Which column holds which variable. Air temperature, and relative humidity or dew point, are needed.
+/// Which column holds which variable. Air temperature, and relative humidity, dew point or wet bulb, are needed.
 #[derive(Debug, Clone, PartialEq, Default, Serialize, Deserialize)]
 #[serde(deny_unknown_fields)]
 pub struct Columns {
@@ -182,6 +226,9 @@ pub struct Columns {
     /// Dew point: °C, K, °F. Used before relative humidity.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub dew_point: Option<ColumnMapping>,
+    /// Wet bulb over liquid water: °C, K, °F. Used where neither dew point nor relative humidity is there.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub wet_bulb: Option<ColumnMapping>,
     /// Pressure at the station: hPa, kPa, Pa, inHg, mmHg.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub station_pressure: Option<ColumnMapping>,
@@ -203,6 +250,7 @@ impl Columns {
             (Quantity::AirTemperature, &self.air_temperature),
             (Quantity::RelativeHumidity, &self.relative_humidity),
             (Quantity::DewPoint, &self.dew_point),
+            (Quantity::WetBulb, &self.wet_bulb),
             (Quantity::StationPressure, &self.station_pressure),
             (Quantity::SeaLevelPressure, &self.sea_level_pressure),
             (Quantity::WindSpeed, &self.wind_speed),
@@ -211,6 +259,20 @@ impl Columns {
         all.into_iter()
             .filter_map(|(quantity, mapping)| mapping.as_ref().map(|m| (quantity, m)))
             .collect()
+    }
+
+    /// The mapping of one variable, to be set.
+    pub fn slot(&mut self, quantity: Quantity) -> &mut Option<ColumnMapping> {
+        match quantity {
+            Quantity::AirTemperature => &mut self.air_temperature,
+            Quantity::RelativeHumidity => &mut self.relative_humidity,
+            Quantity::DewPoint => &mut self.dew_point,
+            Quantity::WetBulb => &mut self.wet_bulb,
+            Quantity::StationPressure => &mut self.station_pressure,
+            Quantity::SeaLevelPressure => &mut self.sea_level_pressure,
+            Quantity::WindSpeed => &mut self.wind_speed,
+            Quantity::Shortwave => &mut self.shortwave,
+        }
     }
 }
 
@@ -228,6 +290,9 @@ pub struct ColumnMapping {
     /// Added after the factor.
     #[serde(default, skip_serializing_if = "is_zero")]
     pub offset: f64,
+    /// Marks of a missing value in this column alone, for example `9999`.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub missing: Vec<String>,
 }
 
 impl ColumnMapping {
@@ -238,6 +303,7 @@ impl ColumnMapping {
             unit: unit.into(),
             scale: 1.0,
             offset: 0.0,
+            missing: Vec::new(),
         }
     }
 }

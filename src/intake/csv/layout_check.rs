@@ -1,7 +1,8 @@
 //! A layout checked as a whole, before any byte of the file is read.
 
-use super::layout::{Clock, ColumnMapping, Columns, Dialect, Layout, TimeLayout};
+use super::layout::{Clock, ColumnMapping, Columns, Dialect, FixedColumn, Layout, TimeLayout};
 use super::pattern::Pattern;
+use super::records::Cut;
 use crate::model::notes::Fault;
 use crate::model::weather::zone::Zone;
 use crate::model::weather::{Quantity, Unit};
@@ -12,6 +13,11 @@ impl Layout {
         let mut faults = self.dialect.faults();
         faults.extend(self.time.faults());
         faults.extend(self.columns.faults());
+        let hold = self.long_form.as_ref().and_then(|long| long.hold_hours);
+        if hold.is_some_and(|hours| !(hours > 0.0 && hours <= LONGEST_HOLD_HOURS)) {
+            let detail = format!("expected more than 0 and at most {LONGEST_HOLD_HOURS} hours; found {hold:?}");
+            faults.push(Fault::new("long_form/hold_hours", "out_of_range", detail));
+        }
         if self.rows.as_ref().is_some_and(|rows| rows.column.is_empty()) {
             faults.push(Fault::new("rows/column", "empty", "expected the name of a column"));
         }
@@ -26,6 +32,20 @@ impl Dialect {
             "tab" | "\\t" => Some(b'\t'),
             other => single_byte(other).filter(|b| !b.is_ascii_alphanumeric() && !b"\"\r\n.-+".contains(b)),
         }
+    }
+
+    /// How rows are cut into cells.
+    pub(super) fn cut(&self) -> Cut {
+        if self.fixed_width.is_empty() {
+            return Cut::Delimiter(self.delimiter_byte().unwrap_or(b','));
+        }
+        let place = |column: &FixedColumn| (column.start.saturating_sub(1), column.width);
+        Cut::Places(self.fixed_width.iter().map(place).collect())
+    }
+
+    /// The sign between groups of three digits.
+    pub(super) fn thousands_byte(&self) -> Option<u8> {
+        self.thousands.as_deref().and_then(single_byte)
     }
 
     /// The byte that starts a comment line.
@@ -73,9 +93,30 @@ impl Dialect {
                 fault(field, format!("expected 0 to {MOST_PREAMBLE_ROWS}; found {rows}"));
             }
         }
+        faults.extend(self.thousands_fault());
+        faults.extend(self.fixed_width_faults());
         faults
     }
+
+    fn thousands_fault(&self) -> Option<Fault> {
+        let sign = self.thousands.as_ref()?;
+        let sound = [".", ",", "'", " "].contains(&sign.as_str()) && *sign != self.decimal;
+        let detail = format!("expected . , ' or a space, and not the decimal sign; found {sign:?}");
+        (!sound).then(|| Fault::new("dialect/thousands", "bad_dialect", detail))
+    }
+
+    fn fixed_width_faults(&self) -> Vec<Fault> {
+        let wrong = |column: &FixedColumn| column.name.is_empty() || column.start == 0 || column.width == 0;
+        let places = (0..self.fixed_width.len()).filter(|at| wrong(&self.fixed_width[*at]));
+        let detail = "expected a name, a start from 1 and a width of at least 1";
+        places
+            .map(|at| Fault::new(format!("dialect/fixed_width/{at}"), "bad_dialect", detail))
+            .collect()
+    }
 }
+
+/// A year: whatever holds longer was read once [h].
+const LONGEST_HOLD_HOURS: f64 = 8784.0;
 
 /// More lines before the data than any file met.
 const MOST_PREAMBLE_ROWS: usize = 1000;
@@ -98,7 +139,13 @@ impl TimeLayout {
             ));
         }
         match Pattern::parse(&self.format) {
-            Ok(pattern) => faults.extend(self.clock_fault(&pattern)),
+            Ok(pattern) => {
+                faults.extend(self.clock_fault(&pattern));
+                if !pattern.has_year() && self.year.is_none() {
+                    let detail = "the format has no year (%Y or %y): send time.year, the year of all readings";
+                    faults.push(Fault::new("time/year", "missing", detail));
+                }
+            }
             Err(detail) => faults.push(Fault::new("time/format", "bad_format", detail)),
         }
         if let Some(Err(detail)) = self.zone.as_deref().map(Zone::parse) {
@@ -116,6 +163,11 @@ impl TimeLayout {
 
     fn clock_fault(&self, pattern: &Pattern) -> Option<Fault> {
         let wants_half = self.clock == Some(Clock::AmPm);
+        let whole_number = self.clock == Some(Clock::HourMinute);
+        if whole_number && (!pattern.has_hour() || pattern.has_minute()) {
+            let detail = "clock hhmm needs %H in the format, which holds hour and minute, and no %M";
+            return Some(Fault::new("time/clock", "clock_mismatch", detail));
+        }
         if self.clock.is_some() && pattern.is_twelve_hour() != wants_half {
             let detail = "clock am_pm needs %I and %p in the format, and the other clocks need %H";
             return Some(Fault::new("time/clock", "clock_mismatch", detail));
@@ -139,8 +191,9 @@ impl Columns {
                 "expected the column of the air temperature",
             ));
         }
-        if !has(Quantity::RelativeHumidity) && !has(Quantity::DewPoint) {
-            let detail = "expected a column for relative_humidity or dew_point; found neither";
+        let humidity = [Quantity::RelativeHumidity, Quantity::DewPoint, Quantity::WetBulb];
+        if !humidity.into_iter().any(has) {
+            let detail = "expected a column for relative_humidity, dew_point or wet_bulb; found none";
             faults.push(Fault::new("columns", "no_humidity", detail));
         }
         if has(Quantity::StationPressure) && has(Quantity::SeaLevelPressure) {

@@ -1,4 +1,5 @@
-//! CSV weather: the documented form, or any form with an explicit mapping ([`Layout`]).
+//! CSV weather: the documented form, any form whose meaning can be told by looking ([`detect`]), or any form with an
+//! explicit mapping ([`Layout`]).
 //!
 //! The documented form needs no layout: UTF-8, comma, decimal point, one header row of these names in any order, `time` in
 //! RFC 3339 with `Z` or an offset, one row a reading, at any spacing and in any order. Needed are `time`,
@@ -18,10 +19,13 @@
 //! `rows` puts them together.
 
 mod clock;
+mod detect;
 mod faults;
 mod layout;
 mod layout_check;
 mod limits;
+mod lines;
+mod long_form;
 mod number;
 mod own_form;
 mod pattern;
@@ -35,9 +39,13 @@ mod shown;
 mod sniff;
 mod source;
 
+pub use detect::{
+    Candidate, ColumnFinding, ColumnHint, ColumnHints, Confidence, Detection, Hints, Question, Role, detect,
+};
 pub use layout::{
-    Ambiguous, Clock, ColumnMapping, Columns, Dialect, LabelName, Layout, Nonexistent, RowFilter, TimeLayout,
+    Ambiguous, Clock, ColumnMapping, Columns, Dialect, FixedColumn, LabelName, Layout, LongForm, Nonexistent,
+    RowFilter, TimeLayout,
 };
 pub use limits::Limits;
 pub use own_form::OWN_HEADER;
-pub use read::read;
+pub use read::{read, read_with_hints};

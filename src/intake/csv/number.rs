@@ -55,6 +55,24 @@ fn general(cell: &[u8], sign: u8) -> Option<f64> {
     value.is_finite().then_some(value)
 }
 
+/// A number with a sign between its groups of three digits before the decimal sign: `1.013,25`. Without groups it is a
+/// plain number; groups of another length are none.
+pub(super) fn grouped(cell: &[u8], sign: u8, thousands: u8) -> Option<f64> {
+    if !cell.contains(&thousands) {
+        return decimal(cell, sign);
+    }
+    let unsigned = cell
+        .strip_prefix(b"-")
+        .or_else(|| cell.strip_prefix(b"+"))
+        .unwrap_or(cell);
+    let whole = unsigned.split(|b| *b == sign).next().unwrap_or_default();
+    let mut groups = whole.split(|b| *b == thousands);
+    let first = groups.next().unwrap_or_default();
+    let sound = (1..=3).contains(&first.len()) && groups.all(|group| group.len() == 3);
+    let joined: Vec<u8> = cell.iter().copied().filter(|b| *b != thousands).collect();
+    sound.then(|| decimal(&joined, sign))?
+}
+
 /// Digits and nothing else, as a whole number.
 pub(super) fn digits(text: &[u8]) -> Option<i64> {
     let step = |n: i64, b: &u8| b.is_ascii_digit().then(|| n * 10 + i64::from(b - b'0'));
@@ -89,6 +107,19 @@ mod tests {
         assert_eq!(
             (digits(b"0042"), digits(b""), digits(b"-1"), digits(&[b'9'; 19])),
             (Some(42), None, None, None)
+        );
+    }
+
+    #[test]
+    fn groups_of_three_are_joined_and_others_refused() {
+        let read = |cell: &str| grouped(cell.as_bytes(), b',', b'.');
+        assert_eq!(
+            (read("1.013,25"), read("-1.000.000"), read("5,5")),
+            (Some(1013.25), Some(-1e6), Some(5.5))
+        );
+        assert_eq!(
+            (read("1.01"), read("1013.250"), read("1.013.2"), read(".500")),
+            (None, None, None, None)
         );
     }
 

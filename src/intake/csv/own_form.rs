@@ -41,6 +41,7 @@ pub(super) fn layout_for(header: &[String]) -> Result<Layout, Vec<WeatherFault>>
             air_temperature: column("air_temperature_c", "°C"),
             relative_humidity: column("relative_humidity_pct", "%"),
             dew_point: column("dew_point_c", "°C"),
+            wet_bulb: None,
             station_pressure: column("air_pressure_hpa", "hPa"),
             sea_level_pressure: None,
             wind_speed: column("wind_speed_m_s", "m/s"),
@@ -48,6 +49,7 @@ pub(super) fn layout_for(header: &[String]) -> Result<Layout, Vec<WeatherFault>>
         },
         missing: Vec::new(),
         rows: None,
+        long_form: None,
     })
 }
 

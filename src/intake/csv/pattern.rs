@@ -1,5 +1,6 @@
 //! Time cells: RFC 3339, epoch numbers, or a pattern of date parts.
 
+use super::layout::Clock;
 use super::number::digits;
 
 /// How a time cell is written.
@@ -8,6 +9,8 @@ pub(super) enum Pattern {
     Rfc3339,
     UnixSeconds,
     UnixMilliseconds,
+    /// Days since 1899-12-30, as spreadsheets count them.
+    SpreadsheetDays,
     Parts(Vec<Part>),
 }
 
@@ -22,6 +25,8 @@ pub(super) enum Part {
     DayOfYear,
     Hour,
     HalfDayHour,
+    /// Hour and minute as one whole number.
+    HourMinute,
     Minute,
     Second,
     AmPm,
@@ -37,11 +42,42 @@ impl Pattern {
             "rfc3339" => Ok(Self::Rfc3339),
             "unix_s" => Ok(Self::UnixSeconds),
             "unix_ms" => Ok(Self::UnixMilliseconds),
+            "spreadsheet_days" => Ok(Self::SpreadsheetDays),
             _ if format.contains('%') => parse_parts(format).map(Self::Parts),
             _ => Err(format!(
-                "expected rfc3339, unix_s, unix_ms or a pattern such as %Y-%m-%d %H:%M; found {format:?}"
+                "expected rfc3339, unix_s, unix_ms, spreadsheet_days or a pattern such as %Y-%m-%d %H:%M; found {format:?}"
             )),
         }
+    }
+
+    /// The pattern as this clock reads it.
+    pub(super) fn with_clock(self, clock: Option<Clock>) -> Self {
+        match (self, clock) {
+            (Self::Parts(mut parts), Some(Clock::HourMinute)) => {
+                parts
+                    .iter_mut()
+                    .filter(|part| **part == Part::Hour)
+                    .for_each(|part| *part = Part::HourMinute);
+                Self::Parts(parts)
+            }
+            (other, _) => other,
+        }
+    }
+
+    /// False for dates whose year stands elsewhere.
+    pub(super) fn has_year(&self) -> bool {
+        match self {
+            Self::Parts(parts) => parts.contains(&Part::Year) || parts.contains(&Part::ShortYear),
+            _ => true,
+        }
+    }
+
+    pub(super) fn has_hour(&self) -> bool {
+        matches!(self, Self::Parts(parts) if parts.contains(&Part::Hour))
+    }
+
+    pub(super) fn has_minute(&self) -> bool {
+        matches!(self, Self::Parts(parts) if parts.contains(&Part::Minute))
     }
 
     pub(super) fn is_twelve_hour(&self) -> bool {
@@ -56,7 +92,7 @@ impl Pattern {
         match self {
             Self::UnixSeconds => Some(count),
             Self::UnixMilliseconds => Some(count.div_euclid(1000)),
-            Self::Rfc3339 | Self::Parts(_) => None,
+            Self::Rfc3339 | Self::SpreadsheetDays | Self::Parts(_) => None,
         }
     }
 
@@ -66,6 +102,7 @@ impl Pattern {
             Self::Rfc3339 => "a time such as 2026-01-31T13:00:00Z".into(),
             Self::UnixSeconds => "seconds since 1970".into(),
             Self::UnixMilliseconds => "milliseconds since 1970".into(),
+            Self::SpreadsheetDays => "days since 1899-12-30, such as 46053.5".into(),
             Self::Parts(_) => format!("a time written as {format}"),
         }
     }
@@ -85,7 +122,7 @@ fn parse_parts(format: &str) -> Result<Vec<Part>, String> {
         parts.push(part);
     }
     complete(&parts).then_some(parts).ok_or_else(|| {
-        format!("expected a year, a month and day (or %j), and an hour (%H, or %I with %p); found {format:?}")
+        format!("expected a month and day (or %j), an hour (%H, or %I with %p), and one year at most; found {format:?}")
     })
 }
 
@@ -110,12 +147,12 @@ fn directive(letter: Option<u8>) -> Option<Part> {
 
 fn complete(parts: &[Part]) -> bool {
     let has = |part: Part| parts.contains(&part);
-    let year = has(Part::Year) != has(Part::ShortYear);
+    let two_years = has(Part::Year) && has(Part::ShortYear);
     let month_and_day = (has(Part::Month) != has(Part::MonthName)) && has(Part::Day);
     let day = has(Part::DayOfYear) != month_and_day;
     let half_day = has(Part::HalfDayHour) && has(Part::AmPm);
     let hour = has(Part::Hour) && !has(Part::AmPm) && !has(Part::HalfDayHour);
-    year && day && (hour != half_day)
+    !two_years && day && (hour != half_day)
 }
 
 #[cfg(test)]

@@ -2,7 +2,7 @@
 
 use super::faults::quoted;
 use super::layout::{ColumnMapping, Layout, RowFilter};
-use super::number::decimal;
+use super::number::{decimal, grouped};
 use crate::model::weather::{Quantity, Unit, WeatherFault};
 
 /// Where everything is in a row of this file.
@@ -13,6 +13,9 @@ pub(super) struct Plan {
     pub filter: Option<(usize, Vec<u8>)>,
     pub missing: MissingMarks,
     pub decimal_sign: u8,
+    pub thousands: Option<u8>,
+    /// Where the name of what was read stands, in files of one value a row.
+    pub name_at: Option<usize>,
 }
 
 /// One mapped column.
@@ -23,12 +26,14 @@ pub(super) struct ValueColumn {
     /// `si = number * slope + intercept`.
     slope: f64,
     intercept: f64,
+    missing: MissingMarks,
 }
 
 impl Plan {
     /// Finds every mapped column in the header. The layout has no faults of its own.
     pub(super) fn bind(layout: &Layout, header: &Header) -> Result<Self, Vec<WeatherFault>> {
         let mut faults = Vec::new();
+        let decimal_sign = if layout.dialect.decimal == "," { b',' } else { b'.' };
         let mut find = |name: &str| {
             header
                 .find(name)
@@ -36,11 +41,15 @@ impl Plan {
                 .unwrap_or_default()
         };
         let time_at = layout.time.columns.iter().map(|name| find(name)).collect();
-        let values = layout
-            .columns
-            .mapped()
-            .into_iter()
-            .map(|(q, mapping)| ValueColumn::new(q, mapping, find(&mapping.column)));
+        let long = layout
+            .long_form
+            .as_ref()
+            .map(|long| (find(&long.name_column), find(&long.value_column)));
+        let mapped = layout.columns.mapped().into_iter();
+        let values = mapped.map(|(quantity, mapping)| {
+            let at = long.map_or_else(|| find(&mapping.column), |(_, value_at)| value_at);
+            ValueColumn::new(quantity, mapping, at, decimal_sign)
+        });
         let values = values.collect();
         let filter = layout
             .rows
@@ -49,7 +58,6 @@ impl Plan {
         if !faults.is_empty() {
             return Err(faults);
         }
-        let decimal_sign = if layout.dialect.decimal == "," { b',' } else { b'.' };
         let missing = MissingMarks::new(&layout.missing, decimal_sign);
         Ok(Self {
             time_at,
@@ -58,7 +66,17 @@ impl Plan {
             filter,
             missing,
             decimal_sign,
+            thousands: layout.dialect.thousands_byte(),
+            name_at: long.map(|(name_at, _)| name_at),
         })
+    }
+
+    /// A cell as a number, in the signs of this file.
+    pub(super) fn number(&self, cell: &[u8]) -> Option<f64> {
+        match self.thousands {
+            None => decimal(cell, self.decimal_sign),
+            Some(thousands) => grouped(cell, self.decimal_sign, thousands),
+        }
     }
 
     /// What is wrong with a cell that should be a number.
@@ -80,7 +98,7 @@ impl Plan {
 }
 
 impl ValueColumn {
-    fn new(quantity: Quantity, mapping: &ColumnMapping, at: usize) -> Self {
+    pub(super) fn new(quantity: Quantity, mapping: &ColumnMapping, at: usize, decimal_sign: u8) -> Self {
         let (slope, intercept) = Unit::parse(&mapping.unit).map_or((1.0, 0.0), Unit::si_line);
         Self {
             quantity,
@@ -88,6 +106,7 @@ impl ValueColumn {
             at,
             slope: slope * mapping.scale,
             intercept: intercept + slope * mapping.offset,
+            missing: MissingMarks::new(&mapping.missing, decimal_sign),
         }
     }
 
@@ -96,10 +115,10 @@ impl ValueColumn {
         if cell.is_empty() {
             return Some(f64::NAN);
         }
-        match decimal(cell, plan.decimal_sign) {
-            Some(number) if plan.missing.has_number(number) => Some(f64::NAN),
+        match plan.number(cell) {
+            Some(number) if plan.missing.has_number(number) || self.missing.has_number(number) => Some(f64::NAN),
             Some(number) => Some(number * self.slope + self.intercept),
-            None => plan.missing.has_text(cell).then_some(f64::NAN),
+            None => (plan.missing.has_text(cell) || self.missing.has_text(cell)).then_some(f64::NAN),
         }
     }
 }

@@ -1,8 +1,8 @@
 //! One file from bytes to readings.
 
+use super::detect::{Hints, detect};
 use super::layout::{Dialect, Layout};
 use super::limits::Limits;
-use super::own_form;
 use super::plan::{Header, Plan};
 use super::records::Records;
 use super::rows::Rows;
@@ -10,32 +10,37 @@ use super::source;
 use crate::model::notes::Fault;
 use crate::model::weather::{RawReadings, WeatherFault};
 
-/// Reads a CSV file, gzipped or not. Without a layout the documented form is expected ([`super::OWN_HEADER`]).
+/// Reads a CSV file, gzipped or not. Without a layout it is found out how ([`detect`]).
 ///
 /// # Errors
-/// All faults of the layout; or what is wrong with the file as a whole; or the faults of its rows, the first twenty in
-/// full and the others counted. Nothing is guessed: a row is read as the layout says, or it is a fault.
+/// All faults of the layout; or what has to be asked first; or what is wrong with the file as a whole; or the faults of its
+/// rows, the first twenty in full and the others counted. Nothing is guessed: a row is read as the layout says, or it is a
+/// fault.
 pub fn read(bytes: &[u8], layout: Option<&Layout>, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
-    let faults: Vec<WeatherFault> = layout
-        .map(Layout::faults)
-        .unwrap_or_default()
-        .into_iter()
-        .map(in_layout)
-        .collect();
+    match layout {
+        Some(layout) => by_layout(bytes, layout, limits),
+        None => read_with_hints(bytes, &Hints::default(), limits),
+    }
+}
+
+/// Reads a CSV file as its detection says, and says in the assumptions what was detected.
+///
+/// # Errors
+/// As [`read`].
+pub fn read_with_hints(bytes: &[u8], hints: &Hints, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
+    let detection = detect(bytes, hints, limits)?;
+    let mut readings = by_layout(bytes, detection.settled()?, limits)?;
+    readings.assumptions.splice(0..0, detection.said);
+    Ok(readings)
+}
+
+fn by_layout(bytes: &[u8], layout: &Layout, limits: &Limits) -> Result<RawReadings, Vec<WeatherFault>> {
+    let faults: Vec<WeatherFault> = layout.faults().into_iter().map(in_layout).collect();
     if !faults.is_empty() {
         return Err(faults);
     }
-    let dialect = layout.map_or_else(Dialect::default, |layout| layout.dialect.clone());
-    let mut records = open(bytes, &dialect, limits).map_err(|fault| vec![fault])?;
-    let (header, first_row_waits) = header(&mut records, &dialect).map_err(|fault| vec![fault])?;
-    let own;
-    let layout = match layout {
-        Some(layout) => layout,
-        None => {
-            own = own_form::layout_for(&header.names)?;
-            &own
-        }
-    };
+    let mut records = open(bytes, &layout.dialect, limits).map_err(|fault| vec![fault])?;
+    let (header, first_row_waits) = header(&mut records, &layout.dialect).map_err(|fault| vec![fault])?;
     let plan = Plan::bind(layout, &header)?;
     Rows::new(layout, &plan, header.names.len()).read(records, first_row_waits, limits)
 }
@@ -46,14 +51,17 @@ fn in_layout(fault: Fault) -> WeatherFault {
 
 fn open<'a>(bytes: &'a [u8], dialect: &Dialect, limits: &Limits) -> Result<Records<'a>, WeatherFault> {
     let text = source::open(bytes, &dialect.encoding, limits)?;
-    let delimiter = dialect.delimiter_byte().unwrap_or(b',');
-    Ok(Records::new(text, delimiter, dialect.comment_byte(), limits))
+    Ok(Records::new(text, dialect.cut(), dialect.comment_byte(), limits))
 }
 
 /// Reads up to the first data row. True: that row is read already, since the file has no header.
 fn header(records: &mut Records, dialect: &Dialect) -> Result<(Header, bool), WeatherFault> {
     for _ in 0..dialect.skip_rows {
         records.skip_line()?;
+    }
+    if !dialect.fixed_width.is_empty() {
+        let names = dialect.fixed_width.iter().map(|column| column.name.clone()).collect();
+        return Ok((Header { names, named: true }, false));
     }
     if !records.advance()? {
         let detail = format!(

@@ -1,12 +1,12 @@
 //! Text into rows of cells. Rows without quotes are cut at the delimiters; the others go through the CSV library, with the
 //! lines a quoted cell runs over put together first. One row is held at a time, and never a larger one than allowed.
 
-use std::io::{BufRead, Read};
+use std::io::BufRead;
 
 use csv_core::ReadRecordResult;
 
 use super::limits::Limits;
-use super::source::fault_of;
+use super::lines::{Lines, NoLine};
 use crate::model::weather::WeatherFault;
 
 /// Cells no limit may go beyond.
@@ -15,66 +15,69 @@ const MOST_FIELDS: usize = 65_536;
 /// Lines allowed beyond two for each allowed row: blank lines, comments and quoted line ends are counted too.
 const PREAMBLE_LINES: usize = 2000;
 
+/// How a row is cut into cells.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) enum Cut {
+    /// At this byte, outside quotes.
+    Delimiter(u8),
+    /// By the place of the characters: start from 0, and width.
+    Places(Vec<(usize, usize)>),
+}
+
 /// Rows of a file, one after another.
 pub(super) struct Records<'a> {
-    source: Box<dyn BufRead + 'a>,
-    delimiter: u8,
+    lines: Lines<'a>,
+    cut: Cut,
     comment: Option<u8>,
-    max_row_bytes: usize,
     max_fields: usize,
     max_lines: usize,
-    lines: usize,
     first_line: usize,
-    text: Vec<u8>,
     unquoter: Unquoter,
-    /// Where each cell of the row lies in `text`.
+    /// True: the cells lie in the unquoter's text, not in the line.
+    unquoted: bool,
+    /// Where each cell of the row lies.
     cells: Vec<(u32, u32)>,
 }
 
 impl<'a> Records<'a> {
-    pub(super) fn new(source: Box<dyn BufRead + 'a>, delimiter: u8, comment: Option<u8>, limits: &Limits) -> Self {
+    pub(super) fn new(source: Box<dyn BufRead + 'a>, cut: Cut, comment: Option<u8>, limits: &Limits) -> Self {
+        let delimiter = match cut {
+            Cut::Delimiter(byte) => byte,
+            Cut::Places(_) => b',',
+        };
         Self {
-            source,
-            delimiter,
+            lines: Lines::new(source, limits.max_row_bytes.min(u32::MAX as usize)),
+            cut,
             comment,
-            max_row_bytes: limits.max_row_bytes.min(u32::MAX as usize),
             max_fields: limits.max_fields.min(MOST_FIELDS),
             max_lines: limits.max_rows.saturating_mul(2).saturating_add(PREAMBLE_LINES),
-            lines: 0,
             first_line: 0,
-            text: Vec::new(),
             unquoter: Unquoter {
                 parser: csv_core::ReaderBuilder::new().delimiter(delimiter).build(),
                 plain: Vec::new(),
                 ends: vec![0; limits.max_fields.min(MOST_FIELDS) + 1],
             },
+            unquoted: false,
             cells: Vec::new(),
         }
     }
 
     /// Passes over one line, whatever it holds. False at the end of the file.
     pub(super) fn skip_line(&mut self) -> Result<bool, WeatherFault> {
-        self.text.clear();
-        self.append_line()
+        self.next_line()
     }
 
     /// Moves to the next row that is neither blank nor a comment. False at the end of the file.
     pub(super) fn advance(&mut self) -> Result<bool, WeatherFault> {
         loop {
-            self.text.clear();
-            self.first_line = self.lines + 1;
-            if !self.append_line()? {
+            if !self.next_line()? {
                 return Ok(false);
             }
-            if self.comment.is_some() && self.text.first() == self.comment.as_ref() || self.text.trim_ascii().is_empty()
-            {
+            let line = self.lines.row();
+            if self.comment.is_some() && line.first() == self.comment.as_ref() || line.trim_ascii().is_empty() {
                 continue;
             }
-            if memchr::memchr(b'"', &self.text).is_some() {
-                self.cut_quoted()?;
-            } else {
-                self.cut_plain()?;
-            }
+            self.cut_row()?;
             return Ok(true);
         }
     }
@@ -92,84 +95,92 @@ impl<'a> Records<'a> {
     /// A cell of the row, without spaces around it; `None` past its end.
     pub(super) fn cell(&self, at: usize) -> Option<&[u8]> {
         let (start, end) = *self.cells.get(at)?;
-        Some(trimmed(&self.text[start as usize..end as usize]))
+        let text = if self.unquoted {
+            &self.unquoter.plain
+        } else {
+            self.lines.row()
+        };
+        Some(trimmed(&text[start as usize..end as usize]))
     }
 
-    /// Appends one line without its end. False at the end of the file.
-    fn append_line(&mut self) -> Result<bool, WeatherFault> {
-        let room = (self.max_row_bytes - self.text.len().min(self.max_row_bytes)) as u64 + 2;
-        let mut limited = (&mut self.source).take(room);
-        let read = limited
-            .read_until(b'\n', &mut self.text)
-            .map_err(|error| fault_of(&error))?;
-        if read == 0 {
-            return Ok(false);
+    fn next_line(&mut self) -> Result<bool, WeatherFault> {
+        self.first_line = self.lines.count + 1;
+        match self.lines.advance() {
+            Ok(()) => self.check_lines().map(|()| true),
+            Err(NoLine::End) => Ok(false),
+            Err(other) => Err(self.stopped(other)),
         }
-        self.lines += 1;
-        if self.lines > self.max_lines {
-            let detail = format!(
-                "expected at most {} lines, blank ones and comments included; the file has more",
-                self.max_lines
-            );
-            return Err(WeatherFault::whole("too_many_rows", detail));
+    }
+
+    fn check_lines(&self) -> Result<(), WeatherFault> {
+        if self.lines.count <= self.max_lines {
+            return Ok(());
         }
-        if self.text.last() == Some(&b'\n') {
-            self.text.pop();
-            if self.text.last() == Some(&b'\r') {
-                self.text.pop();
+        let detail = format!(
+            "expected at most {} lines, blank ones and comments included; the file has more",
+            self.max_lines
+        );
+        Err(WeatherFault::whole("too_many_rows", detail))
+    }
+
+    fn stopped(&self, why: NoLine) -> WeatherFault {
+        let most = "the row is longer than allowed";
+        match why {
+            NoLine::Broken(fault) => fault,
+            NoLine::TooLong if memchr::memchr(b'"', self.lines.row()).is_some() => self.fault(
+                "row_too_long",
+                format!(
+                    "{most} ({} bytes): is a quote opened here and never closed?",
+                    self.lines.longest()
+                ),
+            ),
+            NoLine::TooLong => self.fault(
+                "row_too_long",
+                format!("{most} ({} bytes): are the line ends missing?", self.lines.longest()),
+            ),
+            NoLine::End => self.fault("open_quote", "a quote is opened in this row and never closed".into()),
+        }
+    }
+
+    fn fault(&self, code: &'static str, detail: String) -> WeatherFault {
+        WeatherFault::row(self.first_line.max(1), None, code, detail)
+    }
+
+    fn cut_row(&mut self) -> Result<(), WeatherFault> {
+        self.cells.clear();
+        self.unquoted = false;
+        match &self.cut {
+            Cut::Places(places) => at_places(self.lines.row(), places, &mut self.cells),
+            Cut::Delimiter(delimiter) => {
+                if !at_delimiters(self.lines.row(), *delimiter, &mut self.cells) {
+                    self.cut_quoted()?;
+                }
             }
         }
-        if self.text.len() > self.max_row_bytes {
-            return Err(self.too_long());
+        if self.cells.len() <= self.max_fields {
+            return Ok(());
         }
-        Ok(true)
-    }
-
-    fn too_long(&self) -> WeatherFault {
-        let detail = if memchr::memchr(b'"', &self.text).is_some() {
-            format!(
-                "the row is longer than {} bytes: is a quote opened here and never closed?",
-                self.max_row_bytes
-            )
-        } else {
-            format!(
-                "the row is longer than {} bytes: are the line ends missing?",
-                self.max_row_bytes
-            )
-        };
-        WeatherFault::row(self.first_line.max(1), None, "row_too_long", detail)
-    }
-
-    fn cut_plain(&mut self) -> Result<(), WeatherFault> {
-        self.cells.clear();
-        let mut start = 0;
-        for end in memchr::memchr_iter(self.delimiter, &self.text) {
-            self.cells.push((start, end as u32));
-            start = end as u32 + 1;
-        }
-        self.cells.push((start, self.text.len() as u32));
-        self.check_width()
+        Err(self.too_wide())
     }
 
     fn cut_quoted(&mut self) -> Result<(), WeatherFault> {
         let quotes = |text: &[u8]| memchr::memchr_iter(b'"', text).count();
-        while quotes(&self.text) % 2 == 1 {
-            self.text.push(b'\n');
-            if !self.append_line()? {
-                let detail = "a quote is opened in this row and never closed";
-                return Err(WeatherFault::row(self.first_line, None, "open_quote", detail));
+        while quotes(self.lines.row()) % 2 == 1 {
+            match self.lines.extend() {
+                Ok(()) => self.check_lines()?,
+                Err(why) => return Err(self.stopped(why)),
             }
         }
-        self.unquote()?;
-        self.check_width()
+        self.unquote()
     }
 
     /// Cuts the text at the delimiters outside quotes and takes the quotes off.
     fn unquote(&mut self) -> Result<(), WeatherFault> {
         let Unquoter { parser, plain, ends } = &mut self.unquoter;
-        plain.resize(self.text.len(), 0);
+        let text = self.lines.row();
+        plain.resize(text.len(), 0);
         parser.reset();
-        let (first, read, written, cells) = parser.read_record(&self.text, plain, ends);
+        let (first, read, written, cells) = parser.read_record(text, plain, ends);
         // The end of the text ends the last cell. A row that ends before has a line end outside its quotes.
         let (second, _, _, last) = match first {
             ReadRecordResult::InputEmpty => parser.read_record(&[], &mut plain[written..], &mut ends[cells..]),
@@ -181,24 +192,16 @@ impl<'a> Records<'a> {
             self.cells.push((start, *end as u32));
             start = *end as u32;
         }
-        let whole = read == self.text.len();
-        std::mem::swap(&mut self.text, plain);
+        self.unquoted = true;
         match second {
-            ReadRecordResult::Record if whole => Ok(()),
+            ReadRecordResult::Record if read == text.len() => Ok(()),
             ReadRecordResult::OutputEndsFull => Err(self.too_wide()),
             _ => {
                 let detail =
                     "a quote stands inside a cell that does not begin with one; double it inside quotes, or remove it";
-                Err(WeatherFault::row(self.first_line, None, "stray_quote", detail))
+                Err(self.fault("stray_quote", detail.into()))
             }
         }
-    }
-
-    fn check_width(&self) -> Result<(), WeatherFault> {
-        if self.cells.len() <= self.max_fields {
-            return Ok(());
-        }
-        Err(self.too_wide())
     }
 
     fn too_wide(&self) -> WeatherFault {
@@ -207,7 +210,40 @@ impl<'a> Records<'a> {
             self.max_fields,
             self.cells.len()
         );
-        WeatherFault::row(self.first_line, None, "too_many_cells", detail)
+        self.fault("too_many_cells", detail)
+    }
+}
+
+/// Cuts a row without quotes; false as soon as there is one.
+fn at_delimiters(row: &[u8], delimiter: u8, cells: &mut Vec<(u32, u32)>) -> bool {
+    let mut start = 0;
+    for at in memchr::memchr2_iter(delimiter, b'"', row) {
+        if row[at] == b'"' {
+            return false;
+        }
+        cells.push((start, at as u32));
+        start = at as u32 + 1;
+    }
+    cells.push((start, row.len() as u32));
+    true
+}
+
+/// Cuts a row by the place of its characters; cells that begin behind its end are not there.
+fn at_places(row: &[u8], places: &[(usize, usize)], cells: &mut Vec<(u32, u32)>) {
+    let begins = |byte: &u8| byte & 0xc0 != 0x80;
+    let wide = !row.is_ascii();
+    let byte_of = |character: usize| match wide {
+        false => character.min(row.len()),
+        true => (0..row.len())
+            .filter(|at| begins(&row[*at]))
+            .nth(character)
+            .unwrap_or(row.len()),
+    };
+    for (start, width) in places {
+        let (from, to) = (byte_of(*start), byte_of(start.saturating_add(*width)));
+        if from < row.len() {
+            cells.push((from as u32, to as u32));
+        }
     }
 }
 
@@ -234,7 +270,7 @@ mod tests {
     use proptest::prelude::*;
 
     fn all(text: &[u8], limits: &Limits) -> Result<Vec<(usize, Vec<String>)>, WeatherFault> {
-        let mut records = Records::new(Box::new(text), b',', Some(b'#'), limits);
+        let mut records = Records::new(Box::new(text), Cut::Delimiter(b','), Some(b'#'), limits);
         let mut rows = Vec::new();
         while records.advance()? {
             let cells = (0..records.len()).map(|at| String::from_utf8_lossy(records.cell(at).unwrap()).into_owned());

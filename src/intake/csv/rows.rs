@@ -4,10 +4,11 @@ use super::clock::WallClock;
 use super::faults::{RowFaults, quoted};
 use super::layout::Layout;
 use super::limits::Limits;
+use super::long_form::Notes;
 use super::pattern::Pattern;
 use super::plan::Plan;
 use super::records::Records;
-use super::shown::{read_parts, read_rfc3339};
+use super::shown::{read_parts, read_rfc3339, serial_wall_s};
 use crate::model::weather::{Quantity, RawReadings, WeatherFault};
 
 /// Reads data rows by a plan.
@@ -22,6 +23,8 @@ pub(super) struct Rows<'p> {
     time_unix_s: Vec<i64>,
     row: Vec<u32>,
     values: Vec<Vec<f64>>,
+    /// Single values, where each row holds one.
+    notes: Notes,
 }
 
 impl<'p> Rows<'p> {
@@ -30,13 +33,16 @@ impl<'p> Rows<'p> {
             layout,
             plan,
             width,
-            pattern: Pattern::parse(&layout.time.format).unwrap_or(Pattern::Rfc3339),
+            pattern: Pattern::parse(&layout.time.format)
+                .unwrap_or(Pattern::Rfc3339)
+                .with_clock(layout.time.clock),
             clock: WallClock::new(&layout.time),
             faults: RowFaults::default(),
             time_cell: Vec::new(),
             time_unix_s: Vec::new(),
             row: Vec::new(),
             values: vec![Vec::new(); plan.values.len()],
+            notes: Notes::default(),
         }
     }
 
@@ -70,7 +76,7 @@ impl<'p> Rows<'p> {
                 break;
             }
         }
-        self.finish(rows, left_out)
+        self.finish(rows, left_out, limits.max_rows)
     }
 
     /// The file cannot be read further: what was found so far, and why.
@@ -94,6 +100,9 @@ impl<'p> Rows<'p> {
             return self.faults.add(|| fault);
         }
         let plan = self.plan;
+        if let Some(name_at) = plan.name_at {
+            return self.take_note(records, name_at);
+        }
         let time = self.time(records);
         for (column, into) in plan.values.iter().zip(&mut self.values) {
             let cell = records.cell(column.at).unwrap_or_default();
@@ -109,6 +118,31 @@ impl<'p> Rows<'p> {
             Err((code, detail)) => self
                 .faults
                 .add(|| WeatherFault::row(row, Some(&plan.time_name), code, detail)),
+        }
+    }
+
+    /// Reads the one value of a row, if its name is asked for.
+    fn take_note(&mut self, records: &Records, name_at: usize) {
+        let (plan, row) = (self.plan, records.row());
+        let name = records.cell(name_at).unwrap_or_default();
+        let Some(place) = plan.values.iter().position(|column| column.name.as_bytes() == name) else {
+            return;
+        };
+        let column = &plan.values[place];
+        let cell = records.cell(column.at).unwrap_or_default();
+        let time = self.time(records);
+        match (time, column.read(cell, plan)) {
+            (Ok(unix_s), Some(value)) => self.notes.add(unix_s, place, value, row),
+            (time, value) => {
+                if let Err((code, detail)) = time {
+                    self.faults
+                        .add(|| WeatherFault::row(row, Some(&plan.time_name), code, detail));
+                }
+                if value.is_none() {
+                    let fault = || WeatherFault::row(row, Some(&column.name), "bad_number", plan.bad_number(cell));
+                    self.faults.add(fault);
+                }
+            }
         }
     }
 
@@ -143,6 +177,14 @@ impl<'p> Rows<'p> {
         let shown = match &self.pattern {
             Pattern::Rfc3339 => read_rfc3339(cell),
             Pattern::Parts(parts) => read_parts(parts, cell),
+            Pattern::SpreadsheetDays => {
+                let wall_s = self
+                    .plan
+                    .number(cell)
+                    .and_then(serial_wall_s)
+                    .ok_or_else(|| self.bad_time(cell))?;
+                return self.clock.of_wall_s(wall_s, records.row());
+            }
             epoch => return epoch.epoch_s(cell).ok_or_else(|| self.bad_time(cell)),
         };
         match shown {
@@ -156,10 +198,17 @@ impl<'p> Rows<'p> {
         ("bad_time", format!("expected {expected}; found {}", quoted(cell)))
     }
 
-    fn finish(self, rows: usize, left_out: usize) -> Result<RawReadings, Vec<WeatherFault>> {
-        let faults = self.faults.finish();
+    fn finish(mut self, rows: usize, left_out: usize, most: usize) -> Result<RawReadings, Vec<WeatherFault>> {
+        let faults = std::mem::take(&mut self.faults).finish();
         if !faults.is_empty() {
             return Err(faults);
+        }
+        if let Some(long) = &self.layout.long_form {
+            let notes = std::mem::take(&mut self.notes);
+            let looked = notes
+                .looked_at(self.plan.values.len(), long.hold_hours, most)
+                .map_err(|fault| vec![fault])?;
+            (self.time_unix_s, self.row, self.values) = (looked.time_unix_s, looked.row, looked.values);
         }
         if self.row.is_empty() {
             return Err(vec![no_rows(rows, self.layout)]);
@@ -168,6 +217,7 @@ impl<'p> Rows<'p> {
             time_unix_s: self.time_unix_s,
             row: self.row,
             label: self.layout.time.label.map(Into::into).unwrap_or_default(),
+            shortwave_label: self.layout.time.shortwave_label.map(Into::into),
             flags: self.clock.flags(),
             assumptions: super::said::assumptions(self.layout, left_out),
             ..RawReadings::default()
@@ -184,6 +234,7 @@ fn put(raw: &mut RawReadings, quantity: Quantity, values: Vec<f64>) {
         Quantity::AirTemperature => raw.air_temp_k = values,
         Quantity::RelativeHumidity => raw.relative_humidity = Some(values),
         Quantity::DewPoint => raw.dew_point_k = Some(values),
+        Quantity::WetBulb => raw.wet_bulb_k = Some(values),
         Quantity::StationPressure => raw.pressure_pa = Some(values),
         Quantity::SeaLevelPressure => (raw.pressure_pa, raw.pressure_is_sea_level) = (Some(values), true),
         Quantity::WindSpeed => raw.wind_speed_m_s = Some(values),
@@ -192,6 +243,13 @@ fn put(raw: &mut RawReadings, quantity: Quantity, values: Vec<f64>) {
 }
 
 fn no_rows(rows: usize, layout: &Layout) -> WeatherFault {
+    if let Some(long) = layout.long_form.as_ref().filter(|_| rows > 0) {
+        let detail = format!(
+            "none of {rows} rows has a name that is mapped in {:?}",
+            long.name_column
+        );
+        return WeatherFault::column(&long.name_column, "no_rows_left", detail);
+    }
     match &layout.rows {
         Some(filter) if rows > 0 => {
             let detail = format!(

@@ -1,6 +1,7 @@
 //! What a layout leaves to be assumed, or leaves out, in words.
 
 use super::layout::Layout;
+use super::long_form::HOLD_HOURS;
 use crate::model::notes::Assumption;
 
 /// What has to be said about readings read by this layout.
@@ -12,6 +13,15 @@ pub(super) fn assumptions(layout: &Layout, left_out: usize) -> Vec<Assumption> {
             "what the readings' times mean",
             value,
             "means of an hour would shift by half an hour",
+        ));
+    }
+    if let Some(long) = &layout.long_form {
+        let hours = long.hold_hours.unwrap_or(HOLD_HOURS);
+        let value = format!("each holds until the next of its name, {hours} hours at most; looked at every 10 minutes");
+        said.push(Assumption::new(
+            "values noted one by one",
+            value,
+            "the hours between two notes",
         ));
     }
     if let (Some(rows), true) = (&layout.rows, left_out > 0) {

@@ -49,6 +49,7 @@ impl Shown {
             Part::DayOfYear => number(text, 1, 3)?,
             Part::Second => second(text)?,
             Part::ShortYear => number(text, 2, 2)?,
+            Part::HourMinute => number(text, 1, 4)?,
             Part::Month | Part::Day | Part::Hour | Part::HalfDayHour | Part::Minute => number(text, 1, 2)?,
         };
         self.put(part, value);
@@ -64,6 +65,7 @@ impl Shown {
             Part::Day => self.day = value,
             Part::DayOfYear => self.day_of_year = Some(value),
             Part::Hour | Part::HalfDayHour => self.hour = value,
+            Part::HourMinute => (self.hour, self.minute) = (value / 100, value % 100),
             Part::Minute => self.minute = value,
             Part::Second => self.second = value,
             Part::AmPm => self.afternoon = Some(value == 1),
@@ -143,6 +145,17 @@ fn offset(text: &[u8]) -> Option<(i64, &[u8])> {
     lengths
         .filter_map(|length| Some((parse_offset_s(&text[..length])?, &text[length..])))
         .next()
+}
+
+/// Longest serial day that has a date: 31 December 9999.
+const LAST_SERIAL_DAY: f64 = 2_958_466.0;
+
+/// Days since 1899-12-30 with a fraction, as wall clock [s], to the nearest second.
+pub(super) fn serial_wall_s(days: f64) -> Option<i64> {
+    const EPOCH_1899_S: i64 = -25_569 * 86_400;
+    (1.0..LAST_SERIAL_DAY)
+        .contains(&days)
+        .then(|| EPOCH_1899_S + (days * 86_400.0).round() as i64)
 }
 
 /// RFC 3339, read a little more widely: a space for `T`, no seconds, no offset.

@@ -42,20 +42,22 @@ pub(super) fn not_text(start: &[u8], encoding: &'static Encoding) -> Option<Weat
     if encoding == UTF_16LE || encoding == UTF_16BE {
         return None;
     }
-    sixteen_bit(start).or_else(|| binary(start))
+    if let Some(name) = sixteen_bit(start) {
+        let detail = format!("the file looks like UTF-16: send layout.dialect.encoding {name:?}, or save it as UTF-8");
+        return Some(WeatherFault::whole("wrong_encoding", detail));
+    }
+    binary(start)
 }
 
 /// Latin text in UTF-16 has a zero in every second byte.
-fn sixteen_bit(start: &[u8]) -> Option<WeatherFault> {
+pub(super) fn sixteen_bit(start: &[u8]) -> Option<&'static str> {
     let zeros = |first: usize| start.iter().skip(first).step_by(2).filter(|b| **b == 0).count();
     let (even, odd) = (zeros(0), zeros(1));
-    let name = match start.len() / 2 {
-        half if half >= 4 && odd * 10 > half * 8 && even * 10 < half => "utf-16le",
-        half if half >= 4 && even * 10 > half * 8 && odd * 10 < half => "utf-16be",
-        _ => return None,
-    };
-    let detail = format!("the file looks like UTF-16: send layout.dialect.encoding {name:?}, or save it as UTF-8");
-    Some(WeatherFault::whole("wrong_encoding", detail))
+    match start.len() / 2 {
+        half if half >= 4 && odd * 10 > half * 8 && even * 10 < half => Some("utf-16le"),
+        half if half >= 4 && even * 10 > half * 8 && odd * 10 < half => Some("utf-16be"),
+        _ => None,
+    }
 }
 
 /// A zero, or more than one byte in fifty that no text holds.

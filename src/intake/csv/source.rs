@@ -20,7 +20,7 @@ pub(super) fn open<'a>(
             "expected a CSV file; found no bytes at all",
         ));
     }
-    let mut plain: Box<dyn BufRead + 'a> = if bytes.starts_with(GZIP_MAGIC) {
+    let mut plain: Box<dyn BufRead + 'a> = if is_gzip(bytes) {
         Box::new(BufReader::with_capacity(PIECE, Capped::new(bytes, limits)))
     } else if bytes.len() as u64 > limits.max_decompressed_bytes {
         return Err(fault_of(&io::Error::other(Overrun::Bytes(
@@ -38,6 +38,21 @@ pub(super) fn open<'a>(
         return Ok(plain);
     }
     Ok(Box::new(BufReader::with_capacity(PIECE, Decoded::new(plain, encoding))))
+}
+
+/// Whether the file is gzipped.
+pub(super) fn is_gzip(bytes: &[u8]) -> bool {
+    bytes.starts_with(GZIP_MAGIC)
+}
+
+/// The first bytes of a file, decompressed but not decoded.
+pub(super) fn start(bytes: &[u8], most: u64, limits: &Limits) -> Result<Vec<u8>, WeatherFault> {
+    if !is_gzip(bytes) {
+        return Ok(bytes[..bytes.len().min(most as usize)].to_vec());
+    }
+    let mut start = Vec::new();
+    let read = Capped::new(bytes, limits).take(most).read_to_end(&mut start);
+    read.map(|_| start).map_err(|error| fault_of(&error))
 }
 
 /// First two bytes of RFC 1952.

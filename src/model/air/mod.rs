@@ -16,7 +16,7 @@ pub use transport::{
     ETHANOL_OVER_WATER_DIFFUSIVITY, diffusivity_ethanol_m2_s, diffusivity_water_m2_s, dynamic_viscosity_pa_s,
     latent_heat_sublimation_j_kg, latent_heat_vaporisation_j_kg, specific_heat_j_kgk, thermal_conductivity_w_mk,
 };
-pub use wet_bulb::{wet_bulb_ice_k, wet_bulb_k};
+pub use wet_bulb::{vapour_pressure_from_wet_bulb_pa, wet_bulb_ice_k, wet_bulb_k};
 
 /// Molar gas constant [J/(mol K)], exact in the SI of 2019 [CODATA2018].
 pub const GAS_CONSTANT_J_MOLK: f64 = 8.314_462_618;

@@ -2,7 +2,7 @@
 
 use super::{
     Air, ZERO_CELSIUS_K, humidity_ratio, saturation_pressure_ice_pa, saturation_pressure_pa, saturation_slope_ice_pa_k,
-    saturation_slope_pa_k,
+    saturation_slope_pa_k, vapour_pressure_from_humidity_ratio_pa,
 };
 
 /// Enthalpies of adiabatic saturation: heat of the phase change at 0 °C, its change per kelvin [kJ/kg, kJ/(kg K)] and
@@ -14,6 +14,10 @@ struct Phase {
     pressure: fn(f64) -> f64,
     slope: fn(f64) -> f64,
 }
+
+/// Specific heat of dry air and of vapour [kJ/(kg K)] [ASHRAE2017], ch. 1 eq. 30.
+const DRY_AIR: f64 = 1.006;
+const VAPOUR: f64 = 1.86;
 
 const LIQUID: Phase = Phase {
     heat: 2501.0,
@@ -53,6 +57,33 @@ pub fn wet_bulb_ice_k(air: &Air) -> f64 {
     solve(air, &ICE)
 }
 
+/// Vapour pressure [Pa] of air at a temperature [K] and total pressure [Pa] whose wet bulb over liquid water [K] was read:
+/// the same balance, solved for the humidity ratio [ASHRAE2017], ch. 1 eq. 33.
+///
+/// Wet bulbs at or above the temperature [K] give saturated air; depressions that no air can have give 0. NaN where the
+/// water would boil.
+///
+/// ```
+/// use dipcast::model::air::{Air, vapour_pressure_from_wet_bulb_pa, wet_bulb_k};
+/// let air = Air::from_relative_humidity(295.15, 0.4, 95_000.0);
+/// let read_back = vapour_pressure_from_wet_bulb_pa(295.15, wet_bulb_k(&air), 95_000.0);
+/// assert!((read_back - air.vapour_pressure_pa).abs() < 1e-3);
+/// ```
+pub fn vapour_pressure_from_wet_bulb_pa(temp_k: f64, wet_bulb_k: f64, pressure_pa: f64) -> f64 {
+    let saturation_pa = saturation_pressure_pa(wet_bulb_k);
+    if wet_bulb_k >= temp_k {
+        return saturation_pressure_pa(temp_k);
+    }
+    // Negated, so that a missing value ends here too.
+    if !(saturation_pa < pressure_pa && temp_k > wet_bulb_k) {
+        return f64::NAN;
+    }
+    let (dry_c, wet_c) = (temp_k - ZERO_CELSIUS_K, wet_bulb_k - ZERO_CELSIUS_K);
+    let gained = (LIQUID.heat + LIQUID.heat_slope * wet_c) * humidity_ratio(saturation_pa, pressure_pa);
+    let ratio = (gained - DRY_AIR * (dry_c - wet_c)) / (LIQUID.heat + VAPOUR * dry_c - LIQUID.water * wet_c);
+    vapour_pressure_from_humidity_ratio_pa(ratio.max(0.0), pressure_pa)
+}
+
 fn solve(air: &Air, phase: &Phase) -> f64 {
     if air.temp_k.is_nan() || air.vapour_pressure_pa.is_nan() || air.pressure_pa.is_nan() {
         return f64::NAN;
@@ -86,8 +117,6 @@ fn solve(air: &Air, phase: &Phase) -> f64 {
 /// Enthalpy of the saturated stream less that of the air and the added water [kJ per kg dry air], and its slope in the
 /// wet bulb. Rises with the wet bulb; zero at the answer.
 fn imbalance(air: &Air, phase: &Phase, wet_k: f64) -> (f64, f64) {
-    const DRY_AIR: f64 = 1.006;
-    const VAPOUR: f64 = 1.86;
     let saturation = (phase.pressure)(wet_k);
     if saturation >= air.pressure_pa {
         return (f64::INFINITY, 1.0);

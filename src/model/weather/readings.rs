@@ -49,6 +49,8 @@ pub struct RawReadings {
     pub relative_humidity: Option<Vec<f64>>,
     /// Dew point [K].
     pub dew_point_k: Option<Vec<f64>>,
+    /// Wet bulb over liquid water [K], for readings with neither dew point nor relative humidity.
+    pub wet_bulb_k: Option<Vec<f64>>,
     /// Pressure [Pa].
     pub pressure_pa: Option<Vec<f64>>,
     /// True when `pressure_pa` is reduced to mean sea level.
@@ -92,6 +94,7 @@ impl RawReadings {
         let optional = [
             ("relative_humidity", &self.relative_humidity),
             ("dew_point", &self.dew_point_k),
+            ("wet_bulb", &self.wet_bulb_k),
             ("pressure", &self.pressure_pa),
             ("wind_speed", &self.wind_speed_m_s),
             ("shortwave", &self.shortwave_w_m2),
@@ -109,6 +112,7 @@ impl RawReadings {
         let optional = [
             &mut self.relative_humidity,
             &mut self.dew_point_k,
+            &mut self.wet_bulb_k,
             &mut self.pressure_pa,
             &mut self.wind_speed_m_s,
             &mut self.shortwave_w_m2,

@@ -58,7 +58,7 @@ fn accepted(fault: WeatherFault) -> Flag {
 /// The second half: everything that needs the hour grid.
 fn hours(mut raw: RawReadings, options: &RegulariseOptions) -> Result<HourlySeries, Vec<WeatherFault>> {
     let grid = Grid::lay(&raw, options.max_hours).map_err(|fault| vec![fault])?;
-    let humidity = vapour_pressures(&mut raw);
+    let humidity = vapour_pressures(&mut raw, options.elevation_m);
     raw.assumptions.extend(grid.assumptions(&raw));
     let rows = grid.first_rows(&raw.row);
     let air = HourlyAir::of(

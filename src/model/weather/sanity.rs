@@ -30,8 +30,8 @@ pub(super) fn shape_faults(raw: &RawReadings) -> Vec<WeatherFault> {
             "expected air temperatures; all are missing",
         ));
     }
-    if !some(&raw.relative_humidity) && !some(&raw.dew_point_k) {
-        let detail = "expected relative humidity or dew point; there is neither, or all values are missing";
+    if !some(&raw.relative_humidity) && !some(&raw.dew_point_k) && !some(&raw.wet_bulb_k) {
+        let detail = "expected relative humidity, dew point or wet bulb; there is none, or all values are missing";
         faults.push(WeatherFault::whole("no_humidity", detail));
     }
     faults

@@ -37,6 +37,13 @@ const IMPOSSIBLE_DEW_POINT: Screen = Screen {
     detail: "dew point outside -100 to 100 °C; not used, the reading counts as missing. If the value marks a missing reading, \
              name it under `missing`",
 };
+const IMPOSSIBLE_WET_BULB: Screen = Screen {
+    code: "wet_bulb_impossible",
+    plausible: (173.15, 373.15),
+    drop: true,
+    detail: "wet bulb outside -100 to 100 °C; not used, the reading counts as missing. If the value marks a missing reading, \
+             name it under `missing`",
+};
 /// The instrument's own excess above saturation is allowed [fraction].
 const IMPOSSIBLE_HUMIDITY: Screen = Screen {
     code: "humidity_out_of_range",
@@ -73,6 +80,7 @@ pub(super) fn screen(raw: &mut RawReadings) {
     apply(&ODD_TEMP, &mut raw.air_temp_k, row, flags);
     let optional = [
         (&IMPOSSIBLE_DEW_POINT, &mut raw.dew_point_k),
+        (&IMPOSSIBLE_WET_BULB, &mut raw.wet_bulb_k),
         (&IMPOSSIBLE_HUMIDITY, &mut raw.relative_humidity),
         (&IMPOSSIBLE_PRESSURE, &mut raw.pressure_pa),
         (&IMPOSSIBLE_WIND, &mut raw.wind_speed_m_s),

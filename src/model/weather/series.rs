@@ -47,7 +47,7 @@ pub struct SeriesReport {
     pub hours_filled: usize,
     /// Hours that stay unknown.
     pub hours_unknown: usize,
-    /// Which humidity measure was used: `dew_point` or `relative_humidity`.
+    /// Which humidity measure was used: `dew_point`, `relative_humidity` or `wet_bulb`.
     pub humidity_from: &'static str,
     /// Implausible or contradictory values, never edited silently.
     pub flags: Vec<Flag>,

@@ -9,6 +9,8 @@ pub enum Quantity {
     RelativeHumidity,
     /// Dew-point temperature.
     DewPoint,
+    /// Wet-bulb temperature over liquid water.
+    WetBulb,
     /// Pressure at the station itself.
     StationPressure,
     /// Pressure reduced to mean sea level.
@@ -26,6 +28,7 @@ impl Quantity {
             Self::AirTemperature => "air_temperature",
             Self::RelativeHumidity => "relative_humidity",
             Self::DewPoint => "dew_point",
+            Self::WetBulb => "wet_bulb",
             Self::StationPressure => "station_pressure",
             Self::SeaLevelPressure => "sea_level_pressure",
             Self::WindSpeed => "wind_speed",
@@ -37,7 +40,7 @@ impl Quantity {
     pub fn units(self) -> &'static [Unit] {
         use Unit::*;
         match self {
-            Self::AirTemperature | Self::DewPoint => &[Celsius, Kelvin, Fahrenheit],
+            Self::AirTemperature | Self::DewPoint | Self::WetBulb => &[Celsius, Kelvin, Fahrenheit],
             Self::RelativeHumidity => &[Percent, Fraction],
             Self::StationPressure | Self::SeaLevelPressure => &[Hectopascal, Kilopascal, Pascal, InchHg, MillimetreHg],
             Self::WindSpeed => &[MetrePerSecond, KilometrePerHour, MilePerHour, Knot],
@@ -83,15 +86,46 @@ pub enum Unit {
 
 /// What the unit is called in messages, then every spelling that is read, lower case and without spaces.
 const SPELLINGS: [(Unit, &str, &[&str]); 15] = [
-    (Unit::Celsius, "°C", &["°c", "c", "cel", "degc", "deg_c", "celsius"]),
+    (
+        Unit::Celsius,
+        "°C",
+        &[
+            "°c",
+            "c",
+            "cel",
+            "degc",
+            "deg_c",
+            "celsius",
+            "℃",
+            "ºc",
+            "gradc",
+            "°celsius",
+            "degreescelsius",
+        ],
+    ),
     (Unit::Kelvin, "K", &["k", "kelvin"]),
     (
         Unit::Fahrenheit,
         "°F",
-        &["°f", "f", "degf", "deg_f", "[degf]", "fahrenheit"],
+        &[
+            "°f",
+            "f",
+            "degf",
+            "deg_f",
+            "[degf]",
+            "fahrenheit",
+            "℉",
+            "ºf",
+            "°fahrenheit",
+            "degreesfahrenheit",
+        ],
     ),
-    (Unit::Percent, "%", &["%", "percent", "pct"]),
-    (Unit::Fraction, "fraction", &["fraction", "1"]),
+    (
+        Unit::Percent,
+        "%",
+        &["%", "percent", "pct", "%rh", "%rf", "%hr", "%r.h.", "prozent"],
+    ),
+    (Unit::Fraction, "fraction", &["fraction", "1", "0-1", "0..1"]),
     (
         Unit::Hectopascal,
         "hPa",
@@ -99,13 +133,27 @@ const SPELLINGS: [(Unit, &str, &[&str]); 15] = [
     ),
     (Unit::Kilopascal, "kPa", &["kpa", "kilopascal"]),
     (Unit::Pascal, "Pa", &["pa", "pascal"]),
-    (Unit::InchHg, "inHg", &["inhg", "[in_i'hg]"]),
-    (Unit::MillimetreHg, "mmHg", &["mmhg", "mm[hg]"]),
-    (Unit::MetrePerSecond, "m/s", &["m/s", "mps", "ms-1"]),
-    (Unit::KilometrePerHour, "km/h", &["km/h", "kmh", "kph"]),
+    (Unit::InchHg, "inHg", &["inhg", "[in_i'hg]", "in_hg", "in.hg", "\"hg"]),
+    (Unit::MillimetreHg, "mmHg", &["mmhg", "mm[hg]", "mm_hg", "torr"]),
+    (
+        Unit::MetrePerSecond,
+        "m/s",
+        &["m/s", "mps", "ms-1", "m_s", "m_s-1", "ms^-1", "ms⁻¹", "m·s-1", "m.s-1"],
+    ),
+    (
+        Unit::KilometrePerHour,
+        "km/h",
+        &["km/h", "kmh", "kph", "km_h", "kmh-1", "km/u", "km/t"],
+    ),
     (Unit::MilePerHour, "mph", &["mph", "mi/h", "mp/h", "[mi_i]/h"]),
     (Unit::Knot, "knot", &["kn", "kt", "knot", "knots", "[kn_i]"]),
-    (Unit::WattPerSquareMetre, "W/m2", &["w/m2", "w/m²", "w/m^2"]),
+    (
+        Unit::WattPerSquareMetre,
+        "W/m2",
+        &[
+            "w/m2", "w/m²", "w/m^2", "w/m**2", "w_m2", "wm-2", "wm^-2", "w/sqm", "w/qm", "wm⁻²", "watt/m2",
+        ],
+    ),
 ];
 
 /// 0 °C in kelvin, by definition of the degree Celsius (SI brochure, 9th edition, 2.3.1).

@@ -77,7 +77,10 @@ fn options_item(fault: &Fault) -> FaultItem {
 }
 
 fn weather_item(fault: &WeatherFault, upload: bool) -> FaultItem {
-    let layout = fault.column.as_deref().filter(|column| column.starts_with("layout/"));
+    let layout = fault
+        .column
+        .as_deref()
+        .filter(|column| column.starts_with("layout/") || column.starts_with("hints/"));
     if let Some(path) = layout {
         return FaultItem::at(format!("/weather/{path}"), fault.code, fault.detail.clone());
     }

@@ -87,7 +87,8 @@ impl Parts {
     }
 }
 
-fn broken(error: &MultipartError, limit: usize) -> Problem {
+/// A form that cannot be read.
+pub fn broken(error: &MultipartError, limit: usize) -> Problem {
     if error.status() == StatusCode::PAYLOAD_TOO_LARGE {
         return too_large(limit);
     }

@@ -12,7 +12,7 @@ mod table;
 
 pub use answer::{DeviceReport, ModelReport, PredictionAnswer, WeatherFlag, WeatherReport};
 pub use faults::problem_of;
-pub use form::PredictionForm;
+pub use form::{PredictionForm, broken as broken_form};
 pub use hours::{CycleTrace, HourColumns, HourRow, StateFractions, TracePoint};
 pub use periods::{Band, HourOfDay, Period, PeriodBands, StallHours, StallHoursBands, Substance, SubstanceBands};
 pub use places::{CaseReport, ComparedPlace, PlaceReport};

@@ -92,7 +92,7 @@ fn source(weather: Weather, file: Option<Bytes>) -> Result<(WeatherSource, Weath
             let readings = inline.readings().map_err(|fault| vec![fault])?;
             Ok((WeatherSource::Readings(Box::new(readings)), checks))
         }
-        (Weather::Upload(upload), Some(file)) => Ok(uploaded(*upload, file)),
+        (Weather::Upload(upload), Some(file)) => uploaded(*upload, file).map_err(|fault| vec![fault]),
         (Weather::Endpoint(endpoint), None) => {
             Ok((WeatherSource::Endpoint(Box::new(endpoint.order()?)), endpoint.checks()))
         }
@@ -108,10 +108,15 @@ fn source(weather: Weather, file: Option<Bytes>) -> Result<(WeatherSource, Weath
     }
 }
 
-fn uploaded(upload: UploadedWeather, file: Bytes) -> (WeatherSource, WeatherChecks) {
+fn uploaded(upload: UploadedWeather, file: Bytes) -> Result<(WeatherSource, WeatherChecks), FaultItem> {
+    if upload.layout.is_some() && upload.hints.is_some() {
+        let detail = "hints and layout are both there; a layout says everything, so send one of them";
+        return Err(FaultItem::at("/weather/hints", "one_of_two", detail));
+    }
     let checks = upload.checks();
     let layout = upload.layout.map(|layout| Box::new(layout.into()));
-    (WeatherSource::Csv { file, layout }, checks)
+    let hints = upload.hints.map(|hints| Box::new(hints.into())).unwrap_or_default();
+    Ok((WeatherSource::Csv { file, layout, hints }, checks))
 }
 
 fn site(place: Option<Place>, places: Option<Vec<Place>>) -> Result<Site, FaultItem> {
