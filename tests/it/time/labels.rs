@@ -1,6 +1,7 @@
 //! What a value stands for is carried from the reading to the hour, and honoured there.
 
 use dipcast::http::v1::weather::InlineWeather;
+use dipcast::intake::csv::{Layout, Limits, read};
 use dipcast::model::weather::zone::{Zone, wall_clock_text};
 use dipcast::model::weather::{HourlySeries, Label, RawReadings, RegulariseOptions, Stamp, regularise};
 use serde_json::{Value, json};
@@ -241,4 +242,25 @@ async fn a_single_reading_in_a_repeated_half_hour_is_flagged() {
     // Line 17 holds the reading of 15:00Z on the first day: 01:30 there, for the second time.
     assert_eq!(said["rows"], json!([17]));
     assert_eq!(answer["hours"]["time"].as_array().unwrap().len(), 72);
+}
+
+/// A layout carries a label of its own for the irradiance: air at the hour beside the mean of the hour before it.
+#[test]
+fn a_layout_carries_both_labels() {
+    let layout: Layout = serde_json::from_value(json!({
+        "time": {"columns": ["Time"], "zone": "Asia/Kolkata", "format": "%Y-%m-%d %H:%M", "label": "instant",
+                 "shortwave_label": "mean_of_preceding_hour"},
+        "columns": {"air_temperature": {"column": "Temp", "unit": "Cel"}, "relative_humidity": {"column": "RH", "unit": "%"},
+                    "shortwave": {"column": "Sun", "unit": "W/m2"}},
+    }))
+    .unwrap();
+    let file = "Time,Temp,RH,Sun\n2026-06-10 10:00,30,40,500\n2026-06-10 11:00,31,39,600\n2026-06-10 12:00,32,38,700\n";
+    let series = laid(read(file.as_bytes(), Some(&layout), &Limits::default()).unwrap());
+    assert_eq!(
+        (series.stamp, series.shortwave_stamp),
+        (Stamp::Instant, Stamp::MeanOfHour)
+    );
+    // Ten in the morning there is 04:30Z.
+    assert_eq!(series.start_unix_s, START_UNIX_S + 4 * 3600 + 1800);
+    assert_eq!(series.shortwave_w_m2.unwrap()[..2], [600.0, 700.0]);
 }
