@@ -51,6 +51,14 @@ const IMPOSSIBLE_HUMIDITY: Screen = Screen {
     drop: true,
     detail: "relative humidity below 0 or above 105 %; not used, the reading counts as missing",
 };
+/// Drier than any air at the ground: the driest deserts read 1 % [fraction]; remembered.
+const ODD_HUMIDITY: Screen = Screen {
+    code: "humidity_next_to_none",
+    plausible: (0.005, 1.05),
+    drop: false,
+    detail: "relative humidity below 0.5 %, which hardly any air has: a failed sensor, or a mark of a missing reading? Used as it \
+             is; if it marks a missing reading, name it under `missing`",
+};
 /// From above the highest summit to above the highest barometer ever [Pa].
 const IMPOSSIBLE_PRESSURE: Screen = Screen {
     code: "pressure_out_of_range",
@@ -90,6 +98,9 @@ pub(super) fn screen(raw: &mut RawReadings) {
         if let Some(values) = column {
             apply(screen, values, row, flags);
         }
+    }
+    if let Some(values) = &mut raw.relative_humidity {
+        apply(&ODD_HUMIDITY, values, row, flags);
     }
     if let Some(values) = &mut raw.shortwave_w_m2 {
         darkness(values, row, flags);

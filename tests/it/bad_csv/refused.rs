@@ -146,6 +146,25 @@ fn no_humidity() {
     );
 }
 
+/// Columns that are known to be something else are not offered.
+#[test]
+fn only_columns_that_may_be_it_are_offered() {
+    let text = "time,temp_c,rh,rain (mm)\n2026-01-01T00:00Z,20,50,0\n2026-01-01T01:00Z,21,51,1\n";
+    refused(
+        text,
+        "missing_column",
+        (None, Some("relative_humidity")),
+        &["\"column\":\"rh\",\"unit\":\"%\"", "count only with a unit"],
+    );
+    assert!(!faults(text)[0].detail.contains("temp_c"), "{}", faults(text)[0]);
+}
+
+#[test]
+fn a_line_of_totals_is_named() {
+    let text = "time,temp_c,humidity\n2026-01-01T00:00Z,20,50\n2026-01-01T01:00Z,21,51\nTotal,41,101\n";
+    refused(text, "bad_time", (Some(4), Some("time")), &["Total"]);
+}
+
 #[test]
 fn no_header() {
     let text = "2026-01-01T00:00Z,20,50\n2026-01-01T01:00Z,21,51\n";

@@ -33,7 +33,7 @@ fn question(code: &'static str, needed: bool, text: String, candidates: Vec<Cand
 /// Nothing in the header speaks of the air temperature.
 pub(super) fn missing_temperature(choices: &[Choice]) -> Question {
     let text = "expected a column of the air temperature; found none by its name. A bare letter such as T counts only with a unit.";
-    let candidates = numeric(choices).map(|choice| {
+    let candidates = open(choices).map(|choice| {
         let inside = json!({"column": choice.reference, "unit": "°C"});
         Candidate::hint(
             format!("{:?} (it holds {})", choice.reference, range(choice)),
@@ -54,8 +54,8 @@ pub(super) fn missing_temperature(choices: &[Choice]) -> Question {
 
 /// Nothing in the header speaks of humidity.
 pub(super) fn missing_humidity(choices: &[Choice]) -> Question {
-    let text = "expected a column of relative humidity, dew point or wet bulb; found none by its name.";
-    let candidates = numeric(choices).map(|choice| {
+    let text = "expected a column of relative humidity, dew point or wet bulb; found none by its name. Bare letters such as RH count only with a unit.";
+    let candidates = open(choices).map(|choice| {
         let inside = json!({"column": choice.reference, "unit": "%"});
         Candidate::hint(
             format!("{:?} (it holds {})", choice.reference, range(choice)),
@@ -74,8 +74,18 @@ pub(super) fn missing_humidity(choices: &[Choice]) -> Question {
     }
 }
 
-fn numeric(choices: &[Choice]) -> impl Iterator<Item = &Choice> {
-    choices.iter().filter(|choice| choice.values.count > 0)
+/// Columns of numbers that are not known to be something else.
+fn open(choices: &[Choice]) -> impl Iterator<Item = &Choice> {
+    let known = |choice: &&Choice| {
+        choice
+            .meaning
+            .as_ref()
+            .is_some_and(|meaning| !meaning.bare || meaning.unit.is_some())
+    };
+    choices
+        .iter()
+        .filter(|choice| choice.values.count > 0)
+        .filter(move |choice| !known(choice))
 }
 
 fn range(choice: &Choice) -> String {

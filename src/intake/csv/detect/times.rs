@@ -57,7 +57,7 @@ impl Names<'_> {
             fit += usize::from(is(cell));
         }
         // In a short sample one broken cell is more than that.
-        fit > 0 && (fit * 10 >= all * 9 || fit >= 3 && fit + 1 == all)
+        fit > 0 && (fit * 10 >= all * 9 || fit >= 2 && fit + 1 == all)
     }
 
     fn is_number(&self, at: usize) -> bool {

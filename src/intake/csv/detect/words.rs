@@ -65,7 +65,7 @@ pub(super) const VARIABLES: [(Quantity, &str); 8] = [
 /// Letters that stand for a variable only beside a unit: in one national format `RH` is rain, and `T` is anything.
 pub(super) const BARE: [(Quantity, &str); 8] = [
     (AirTemperature, "t, ta, tt, db, tdb, tl"),
-    (RelativeHumidity, "rh, hr, rf, u, ur, rv, h, hum"),
+    (RelativeHumidity, "rh, hr, rf, r, f, u, ur, rv, h, hum"),
     (DewPoint, "td, tp, dp, dpt"),
     (WetBulb, "tw, wb"),
     (StationPressure, "p, pa, qnh, po"),
