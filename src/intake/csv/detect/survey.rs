@@ -12,8 +12,10 @@ use crate::intake::csv::source;
 use crate::model::weather::WeatherFault;
 use crate::model::weather::zone::wall_clock_s;
 
-/// Rows after which nothing new is expected: five years of hours. Undecided dates are followed to the end.
-const ROWS_ENOUGH: usize = 50_000;
+/// Rows after which nothing new is expected: two years of hours. Undecided dates are followed to the end.
+const ROWS_ENOUGH: usize = 20_000;
+/// No mark of a missing value is nearer to zero.
+const SMALLEST_MARK: f64 = 99.0;
 /// Different words in a column after which it is no set of categories.
 const MOST_CATEGORIES: usize = 20;
 /// Values that loggers and services write for a missing one; numbers that can be readings count only where they cannot.
@@ -42,6 +44,8 @@ pub(super) struct Survey {
     pub rows: usize,
     /// The first row of data.
     pub first_row: usize,
+    /// Room for the joined cells of the time.
+    cell: Vec<u8>,
 }
 
 /// How one way of reading the times fits.
@@ -118,6 +122,7 @@ impl Survey {
             categories: ask.texts.iter().map(|at| (*at, Categories::default())).collect(),
             rows: 0,
             first_row: 0,
+            cell: Vec::new(),
         }
     }
 
@@ -134,12 +139,14 @@ impl Survey {
     }
 
     fn look(&mut self, records: &Records, ask: &Ask) {
-        let mut cell = Vec::new();
+        let mut cell = std::mem::take(&mut self.cell);
+        cell.clear();
         for at in ask.time_at {
             cell.extend_from_slice(records.cell(*at).unwrap_or_default());
             cell.push(b' ');
         }
-        let stamp = self.look_at_time(cell.trim_ascii(), records.row());
+        let stamp = self.look_at_time(cell.trim_ascii(), records.row(), !ask.texts.is_empty());
+        self.cell = cell;
         if self.rows > ROWS_ENOUGH {
             return;
         }
@@ -153,14 +160,20 @@ impl Survey {
         }
     }
 
-    fn look_at_time(&mut self, cell: &[u8], row: usize) -> Option<i64> {
+    fn look_at_time(&mut self, cell: &[u8], row: usize, may_repeat: bool) -> Option<i64> {
         let shown: Vec<Option<(Shown, i64)>> = self.fits.iter().map(|fit| fit.read(cell)).collect();
         if shown.iter().all(Option::is_none) {
             return None;
         }
         for (fit, shown) in self.fits.iter_mut().zip(&shown) {
             match shown {
-                Some((shown, wall_s)) => fit.add(shown, *wall_s, row),
+                Some((shown, wall_s)) => {
+                    fit.add(shown, *wall_s, row);
+                    // Series can be told apart only where there are words to tell them by.
+                    if may_repeat && fit.seen.len() < ROWS_ENOUGH && !fit.seen.insert(*wall_s) {
+                        fit.repeated += 1;
+                    }
+                }
                 None => {
                     fit.refuted
                         .get_or_insert_with(|| (row, String::from_utf8_lossy(cell).into_owned()));
@@ -211,9 +224,6 @@ impl Fit {
 
     fn add(&mut self, shown: &Shown, wall_s: i64, row: usize) {
         self.read += 1;
-        if self.seen.len() < ROWS_ENOUGH && !self.seen.insert(wall_s) {
-            self.repeated += 1;
-        }
         self.hour_0 |= shown.hour == 0 && shown.afternoon.is_none();
         self.hour_24 |= shown.hour == 24;
         self.offsets += usize::from(shown.offset_s.is_some());
@@ -251,7 +261,7 @@ impl Values {
             Some(thousands) => grouped(cell, sign, thousands),
         };
         let Some(number) = number else { return };
-        if MARKS.contains(&number) {
+        if number.abs() >= SMALLEST_MARK && MARKS.contains(&number) {
             let written = String::from_utf8_lossy(cell).into_owned();
             if self.marks.len() < MOST_CATEGORIES || self.marks.contains_key(&written) {
                 self.marks.entry(written).or_insert((number, 0)).1 += 1;

@@ -64,9 +64,11 @@ impl Names<'_> {
         self.mostly(at, |cell| Look::of(cell) == Look::Number)
     }
 
-    /// A column of whole numbers up to a largest one.
+    /// A column of whole numbers up to a largest one; one cell beyond it tells another thing.
     fn counts_to(&self, at: usize, most: u32) -> bool {
-        self.mostly(at, |cell| cell.parse::<u32>().is_ok_and(|number| number <= most))
+        let whole = |cell: &str| cell.parse::<u32>().ok();
+        let beyond = self.cells(at).take(CELLS).filter_map(whole).any(|number| number > most);
+        !beyond && self.mostly(at, |cell| whole(cell).is_some())
     }
 
     fn joined(&self, at: &[usize]) -> impl Iterator<Item = String> {
