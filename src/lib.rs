@@ -4,9 +4,11 @@
 
 /// The physics: pure, no IO, no clock.
 pub mod model;
-/// Bytes in: weather files become hourly series.
+/// Bytes in: weather files and weather services become hourly series.
 pub mod intake;
-/// Use cases: read the weather, run the model.
+/// What lasts: an embedded database.
+pub mod store;
+/// Use cases: fetch or read the weather, run the model.
 pub mod service;
 /// The only room that knows the web framework and the wire format.
 pub mod http;

@@ -59,5 +59,22 @@ fn describe() {
     );
     metrics::describe_gauge!("predictions_running", "Predictions being computed.");
     metrics::describe_gauge!("predictions_waiting", "Predictions waiting for a place.");
+    metrics::describe_counter!(
+        "weather_questions_total",
+        "Questions to weather sources, by source and outcome."
+    );
+    metrics::describe_histogram!(
+        "weather_question_duration_seconds",
+        "Time of one question to a weather source."
+    );
+    metrics::describe_counter!(
+        "weather_answers_total",
+        "Answers used, by source and by where they came from: kept, fetched, unchanged, stale."
+    );
+    metrics::describe_gauge!(
+        "weather_budget_left_day",
+        "Weighted calls a source may still be asked today."
+    );
+    metrics::describe_counter!("store_failures_total", "Failures of the store, by what it was doing.");
     metrics::describe_histogram!("prediction_duration_seconds", "Time of computing one prediction.");
 }

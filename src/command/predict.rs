@@ -5,12 +5,13 @@ use std::sync::OnceLock;
 
 use bytes::Bytes;
 use clap::{Args, ValueEnum};
-use dipcast::config::{Config, Overrides};
+use dipcast::config::{Config, Log, Overrides};
 use dipcast::http::negotiate::Format;
 use dipcast::http::router;
 use dipcast::http::schema::Schemas;
 use dipcast::http::v1::predictions::{PredictionAnswer, csv_lines, order, pieces, problem_of};
 use dipcast::service::{Clock, PredictionOrder, PredictionReport, Predictions, Weather};
+use dipcast::telemetry;
 use indicatif::{ProgressBar, ProgressStyle};
 
 #[derive(Args)]
@@ -38,12 +39,13 @@ pub(super) fn run(arguments: &Predict) -> Result<(), String> {
         Output::Json => Format::Json,
         Output::Csv => Format::Csv,
     };
+    start_logs()?;
     let text = read(&arguments.request)?;
     let file = arguments.weather.as_deref().map(read).transpose()?.map(Bytes::from);
     let upload = file.is_some();
     let document = serde_json::to_value(router::document()).map_err(|error| error.to_string())?;
     let order = order(&Schemas::of(&document), &text, file, format).map_err(|problem| problem.to_string())?;
-    let order = fetched(order, upload)?;
+    let order = fetched(order, &config, upload)?;
     let bar = Bar::default();
     let predictions = Predictions::new(&config.runs, &config.limits);
     let report = predictions.run_here(&order, &|done, total| bar.show(done, total));
@@ -55,10 +57,21 @@ pub(super) fn run(arguments: &Predict) -> Result<(), String> {
     )
 }
 
+/// Only what must not be missed; standard output is for the answer.
+fn start_logs() -> Result<(), String> {
+    telemetry::start_logs(&Log {
+        filter: "warn".to_owned(),
+        json: false,
+    })
+}
+
 /// The order with its weather at hand.
-fn fetched(order: PredictionOrder, upload: bool) -> Result<PredictionOrder, String> {
+fn fetched(order: PredictionOrder, config: &Config, upload: bool) -> Result<PredictionOrder, String> {
     let runtime = tokio::runtime::Runtime::new().map_err(|error| format!("the runtime could not start: {error}"))?;
-    let weather = Weather::new(Clock::system());
+    let weather = Weather::new(config, Clock::system());
+    runtime
+        .block_on(weather.open_store())
+        .map_err(|error| error.to_string())?;
     let fetched = runtime.block_on(weather.fetched(order));
     fetched.map_err(|error| problem_of(error, upload).to_string())
 }

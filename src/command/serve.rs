@@ -55,6 +55,7 @@ async fn serve(config: Config, demo: bool) -> Result<(), String> {
     let address = reachable(listener.local_addr().map_err(|error| error.to_string())?);
     warn_if_open(&config);
     let (router, app) = router::build(config);
+    app.weather().open_store().await.map_err(|error| error.to_string())?;
     tracing::info!("listening on http://{address}; the description is at http://{address}/docs/");
     let shown = tokio::spawn(async move {
         if demo {

@@ -3,6 +3,8 @@
 //! `deploy/config.default.toml` is the documentation of every setting and is compiled in.
 
 mod reader;
+mod store;
+mod weather;
 
 use std::net::SocketAddr;
 use std::path::{Path, PathBuf};
@@ -12,6 +14,8 @@ use figment::Figment;
 use figment::providers::{Env, Format, Toml};
 use reader::Reader;
 pub use reader::{ConfigError, ConfigFault};
+pub use store::Store;
+pub use weather::{ApiKey, Budget, History, MetNorway, NasaPower, OpenMeteo, Weather};
 
 /// The defaults, as text.
 pub const DEFAULTS: &str = include_str!("../../deploy/config.default.toml");
@@ -27,6 +31,10 @@ pub struct Config {
     pub limits: Limits,
     /// How many predictions at once.
     pub runs: Runs,
+    /// What lasts.
+    pub store: Store,
+    /// Weather by coordinates.
+    pub weather: Weather,
     /// Logs.
     pub log: Log,
 }
@@ -130,6 +138,8 @@ impl Config {
             access: read_access(&mut reader),
             limits: read_limits(&mut reader),
             runs: read_runs(&mut reader),
+            store: store::read(&mut reader),
+            weather: weather::read(&mut reader),
             log: read_log(&mut reader),
         };
         check_exposure(&config, &mut reader);

@@ -38,7 +38,7 @@ impl App {
             reading: Places::new(config.runs.parallel, config.server.max_connections),
             body_room: BodyRoom::new(config.limits.bodies_bytes),
             predictions: Predictions::new(&config.runs, &config.limits),
-            weather: Weather::new(Clock::system()),
+            weather: Weather::new(&config, Clock::system()),
             rate_limit: RateLimit::new(config.access.requests_per_minute),
             config,
             ready: AtomicBool::new(true),

@@ -22,6 +22,8 @@ pub enum ProblemCode {
     TooManyHours,
     TooManyRequests,
     InternalError,
+    WeatherSourceFailed,
+    WeatherSourceUnavailable,
     Busy,
     Timeout,
     NotReady,
@@ -68,7 +70,7 @@ const fn kind(
 }
 
 /// All problem types.
-pub static KINDS: [ProblemKind; 19] = [
+pub static KINDS: [ProblemKind; 21] = [
     kind(
         "bad_request",
         StatusCode::BAD_REQUEST,
@@ -227,6 +229,26 @@ pub static KINDS: [ProblemKind; 19] = [
             "Something broke inside the service. Nothing about it is shown here; the log has it under the request id.",
             "None: it should not happen.",
             "Send the operator the request id (`instance`).",
+        ],
+    ),
+    kind(
+        "weather_source_failed",
+        StatusCode::BAD_GATEWAY,
+        "The weather source gave nothing of use",
+        [
+            "The source refused the question, or answered something it is not known to answer: another unit, another place, a redirect.",
+            "A source whose form of answer has changed.",
+            "Asking again does not help. Take another source of /v1/weather-sources, or send readings; tell the operator the request id.",
+        ],
+    ),
+    kind(
+        "weather_source_unavailable",
+        StatusCode::SERVICE_UNAVAILABLE,
+        "The weather source does not answer now",
+        [
+            "The source is down, slow or overloaded, it rests after failures, or what this service may ask of it is used up; and no earlier answer is kept.",
+            "Weather of a hundred new places within a minute.",
+            "Send the same request again after the seconds in Retry-After, or take another source of /v1/weather-sources.",
         ],
     ),
     kind(

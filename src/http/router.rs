@@ -7,7 +7,7 @@ use utoipa_axum::routes;
 
 use super::app::App;
 use super::error::{Problem, ProblemCode};
-use super::v1::{evaporants, example_devices, fluids, inspections, predictions};
+use super::v1::{evaporants, example_devices, fluids, inspections, predictions, weather_sources};
 use super::{health, middleware, openapi, pages};
 use crate::config::Config;
 
@@ -18,6 +18,7 @@ fn routes() -> OpenApiRouter<App> {
         .routes(routes!(fluids::list_fluids))
         .routes(routes!(evaporants::list_evaporants))
         .routes(routes!(example_devices::list_example_devices))
+        .routes(routes!(weather_sources::list_weather_sources))
         .routes(routes!(pages::get_start_page))
         .routes(routes!(pages::get_openapi_document))
         .routes(routes!(pages::get_openapi_3_0_document))

@@ -1,6 +1,7 @@
 //! Why there is no prediction, in the words of the use case.
 
-use super::records::{Fault, WeatherFault};
+use super::records::{Facts, Fault, WeatherFault};
+use crate::intake::endpoints::FetchError;
 
 /// Why there is no prediction.
 #[derive(Debug, thiserror::Error)]
@@ -22,12 +23,43 @@ pub enum PredictError {
         /// Predictions in the queue.
         waiting: usize,
     },
+    /// A source of weather gave nothing.
+    #[error("{0}")]
+    Source(SourceTrouble),
     /// The caller went away or asked to stop.
     #[error("the prediction was stopped")]
     Stopped,
     /// Something broke; the text is for the log alone.
     #[error("the prediction broke: {0}")]
     Broken(String),
+}
+
+/// Why a source of weather gave nothing.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct SourceTrouble {
+    /// Name of the source.
+    pub source: &'static str,
+    /// What happened, in a sentence.
+    pub detail: String,
+    /// When the same order may succeed [s]; none if asking again does not help.
+    pub retry_after_s: Option<u64>,
+}
+
+impl SourceTrouble {
+    /// Of a source and its failure.
+    pub(super) fn of(facts: &'static Facts, error: &FetchError) -> Self {
+        Self {
+            source: facts.name,
+            detail: format!("{} gave no weather: {error}", facts.title),
+            retry_after_s: error.retry_after().map(|wait| wait.as_secs().max(1)),
+        }
+    }
+}
+
+impl std::fmt::Display for SourceTrouble {
+    fn fmt(&self, out: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        out.write_str(&self.detail)
+    }
 }
 
 /// One thing wrong with an order, and in which part of it.

@@ -16,11 +16,11 @@ mod tables;
 mod weather;
 
 pub use clock::Clock;
-pub use error::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
+pub use error::{HourLimit, OrderFault, PredictError, SourceTrouble, WeatherTrouble, trouble};
 pub use inspect::{Inspected, Inspection, Told, inspect};
 pub use order::{DeviceChoice, NamedPlace, PredictionOrder, Site, WeatherChecks, WeatherSource};
 pub use places::Places;
 pub use report::{PlaceOutcome, PredictionReport, StallPoint};
 pub use run::{AVERAGED_HOURS_MAX, BAND_HOUR_SAMPLES_MAX, PLACES_MAX, Predictions, Progress, RESOLVED_HOURS_MAX};
 pub use tables::{evaporants, example, examples, fluids};
-pub use weather::{Climate, EndpointOrder, SpanOrder, Weather};
+pub use weather::{Climate, EndpointOrder, SourceReport, SourceState, SpanOrder, Weather};

@@ -5,7 +5,7 @@ pub use crate::intake::csv::{
     Dialect, FixedColumn, Hints, LabelName, Layout, LongForm, Nonexistent, OWN_HEADER, Question, Role, RowFilter,
     TimeLayout,
 };
-pub use crate::intake::endpoints::{Coordinates, Facts, FetchedWeather, Nature, Provenance, Stretch};
+pub use crate::intake::endpoints::{BudgetLeft, Coordinates, Facts, FetchedWeather, Nature, Provenance, Stretch};
 pub use crate::model::cycle::{HourState, Method, TracePoint};
 pub use crate::model::device::{
     ALL_BOUNDS, BalanceDefinition, BodyDefinition, Bound, CupDefinition, Definition, Derived, DipDefinition,

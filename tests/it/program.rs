@@ -20,6 +20,8 @@ impl Program {
             .env("SSL_CERT_FILE", "none")
             .env("SSL_CERT_DIR", "none")
             .env("DIPCAST__LOG__FORMAT", "json")
+            .env("DIPCAST__STORE__FILE", "")
+            .env("DIPCAST__WEATHER__NASA_POWER__ENABLED", "false")
             .stdout(Stdio::piped())
             .stderr(Stdio::piped())
             .spawn()

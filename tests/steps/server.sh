@@ -8,7 +8,9 @@ start_server() {
     local port
     port=$(python3 -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
     base=http://127.0.0.1:$port
-    "$binary" serve --bind "127.0.0.1:$port" > "$server_log" 2>&1 &
+    # No outbound requests, no file: only the built-in source of weather.
+    DIPCAST__STORE__FILE="" DIPCAST__WEATHER__NASA_POWER__ENABLED=false \
+        "$binary" serve --bind "127.0.0.1:$port" > "$server_log" 2>&1 &
     server_pid=$!
     for _ in $(seq 100); do
         curl --silent --fail --output /dev/null "$base/readyz" && return 0

@@ -11,7 +11,7 @@ use crate::http::problems::KINDS;
 const REQUEST_ID: &str = "019b4c2e-7d10-7c3a-9f51-2a6f0e8d4b17";
 
 /// Status, name in the components, what it says.
-const PROBLEMS: [(&str, &str, &str); 12] = [
+const PROBLEMS: [(&str, &str, &str); 13] = [
     (
         "400",
         "BadRequest",
@@ -42,6 +42,11 @@ const PROBLEMS: [(&str, &str, &str); 12] = [
         "Too many requests; wait as many seconds as `Retry-After` says.",
     ),
     ("500", "InternalError", "Our fault; nothing about it is shown."),
+    (
+        "502",
+        "BadGateway",
+        "A weather source gave nothing of use; asking again does not help.",
+    ),
     (
         "503",
         "TryAgain",
@@ -80,6 +85,9 @@ fn add_problems(path: &str, operation: &mut Operation, posts: bool) {
     }
     if path.contains('{') {
         can_give.extend(["400", "404"]);
+    }
+    if path == "/v1/predictions" {
+        can_give.push("502");
     }
     if path == "/metrics" {
         can_give.push("401");

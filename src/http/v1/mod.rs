@@ -56,3 +56,5 @@ pub mod schedule;
 pub mod weather;
 /// Weather by coordinates.
 pub mod weather_endpoint;
+/// `GET /v1/weather-sources`
+pub mod weather_sources;

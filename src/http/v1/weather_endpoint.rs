@@ -7,14 +7,14 @@ use utoipa::ToSchema;
 use crate::http::error::FaultItem;
 use crate::service::{self, EndpointOrder, SpanOrder};
 
-/// Weather of a place from a source of weather. Say which hours by `from` and `to`, or, seen from
+/// Weather of a place from one of the sources of `/v1/weather-sources`. Say which hours by `from` and `to`, or, seen from
 /// now, by `past`, `ahead` or both.
 #[derive(Debug, Clone, Serialize, Deserialize, ToSchema)]
 #[serde(deny_unknown_fields)]
 pub struct EndpointWeather {
     /// `endpoint`
     pub kind: EndpointKind,
-    /// Name of the source.
+    /// Name of the source: one of `/v1/weather-sources`.
     #[schema(examples("fixture"), max_length = 40)]
     pub source: String,
     /// Latitude [degree north]; four decimals are kept.
@@ -75,6 +75,11 @@ pub enum Climate {
     Temperate,
     /// Long frost, short summers.
     Cold,
+}
+
+impl Climate {
+    /// All of them.
+    pub const ALL: [Self; 4] = [Self::DryContinental, Self::HumidCoast, Self::Temperate, Self::Cold];
 }
 
 impl From<Climate> for service::Climate {

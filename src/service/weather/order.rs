@@ -64,6 +64,23 @@ impl SpanOrder {
         }
         Ok(span)
     }
+
+    /// Faults of the beginning and the end, pointed at the fields that named them.
+    pub(super) fn in_its_own_words(&self, mut faults: Vec<WeatherFault>) -> Vec<WeatherFault> {
+        let Self::AroundNow { past, ahead } = self else {
+            return faults;
+        };
+        for fault in &mut faults {
+            let field = match fault.column.as_deref() {
+                Some("endpoint/from") if past.is_some() => "endpoint/past",
+                Some("endpoint/from" | "endpoint/to") if ahead.is_some() => "endpoint/ahead",
+                Some("endpoint/to") => "endpoint/past",
+                _ => continue,
+            };
+            fault.column = Some(field.to_owned());
+        }
+        faults
+    }
 }
 
 fn empty(order: &SpanOrder, span: &HourSpan) -> WeatherFault {

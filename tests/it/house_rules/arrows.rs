@@ -5,9 +5,10 @@ use syn::visit::{self, Visit};
 use super::source::{self, Source, assert_none};
 
 /// What a room may name besides itself. `main` may name everything.
-const ARROWS: [(&str, &[&str]); 6] = [
+const ARROWS: [(&str, &[&str]); 7] = [
     ("http", &["service", "config", "telemetry"]),
-    ("service", &["model", "intake", "config", "telemetry"]),
+    ("service", &["model", "intake", "store", "config", "telemetry"]),
+    ("store", &["model", "config", "telemetry"]),
     ("intake", &["model", "config", "telemetry"]),
     ("model", &[]),
     ("config", &[]),

@@ -4,7 +4,7 @@ use crate::http::error::{FaultItem, INTERNAL_DETAIL, Problem, ProblemCode};
 use crate::http::extract::RETRY_AFTER_BUSY_S;
 use crate::http::v1::weather::inline_name;
 use crate::service::records::{Fault, WeatherFault};
-use crate::service::{HourLimit, OrderFault, PredictError, WeatherTrouble, trouble};
+use crate::service::{HourLimit, OrderFault, PredictError, SourceTrouble, WeatherTrouble, trouble};
 
 /// The problem of a prediction that was not made; `upload` says whether the readings came in a file.
 pub fn problem_of(error: PredictError, upload: bool) -> Problem {
@@ -18,12 +18,21 @@ pub fn problem_of(error: PredictError, upload: bool) -> Problem {
             let detail = format!("all places are taken and {waiting} predictions wait; send the same request again");
             Problem::new(ProblemCode::Busy, detail).retry_after(RETRY_AFTER_BUSY_S)
         }
+        PredictError::Source(trouble) => no_weather(trouble),
         PredictError::Stopped => Problem::new(ProblemCode::NotReady, "the run was stopped; send the request again")
             .retry_after(RETRY_AFTER_BUSY_S),
         PredictError::Broken(reason) => {
             tracing::error!(reason, "a prediction broke");
             Problem::new(ProblemCode::InternalError, INTERNAL_DETAIL)
         }
+    }
+}
+
+/// 503 if asking again helps, else 502.
+fn no_weather(trouble: SourceTrouble) -> Problem {
+    match trouble.retry_after_s {
+        Some(seconds) => Problem::new(ProblemCode::WeatherSourceUnavailable, trouble.detail).retry_after(seconds),
+        None => Problem::new(ProblemCode::WeatherSourceFailed, trouble.detail),
     }
 }
 
