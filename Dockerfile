@@ -20,10 +20,13 @@ FROM debian:12.11-slim
 # hadolint ignore=DL3008
 RUN apt-get update \
     && apt-get install -y --no-install-recommends ca-certificates \
-    && rm -rf /var/lib/apt/lists/*
+    && rm -rf /var/lib/apt/lists/* \
+    && install -d -o 10001 -g 10001 /var/lib/dipcast
 COPY --from=build /build/target/release/dipcast /usr/local/bin/dipcast
 # A number, so that a cluster can see that it is not root.
 USER 10001:10001
+# Fetched weather; mount a volume there and it outlasts the container.
+ENV DIPCAST__STORE__FILE=/var/lib/dipcast/dipcast.db
 EXPOSE 8080
 STOPSIGNAL SIGTERM
 HEALTHCHECK --interval=10s --timeout=3s --start-period=5s --retries=3 CMD ["dipcast", "healthcheck"]

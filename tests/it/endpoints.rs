@@ -1,7 +1,11 @@
 //! Weather by coordinates: requests, sources, and what the network can do to them.
 
-mod asking;
-mod bodies;
+pub mod asking;
+pub mod bodies;
+mod conduct;
 mod fixture;
+mod forms;
+mod questions;
 mod scenarios;
-mod stand_in;
+pub mod stand_in;
+mod through_http;

@@ -26,6 +26,7 @@ mod prediction;
 mod routes;
 mod server;
 mod signs;
+mod store;
 mod support;
 mod time;
 mod reference;

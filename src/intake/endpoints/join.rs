@@ -29,7 +29,7 @@ type Column = fn(&RawReadings) -> Option<&Vec<f64>>;
 /// One reading an hour from pieces in order of time; hours that no piece knows are NaN. Irradiance becomes the mean of the
 /// hour that follows its label, so that the last hour keeps its own; seams are said.
 pub fn join(pieces: &[Piece]) -> (RawReadings, Vec<Stretch>) {
-    let readings = pieces.iter().map(|piece| Hourly::of(piece)).collect::<Vec<_>>();
+    let readings = pieces.iter().map(Hourly::of).collect::<Vec<_>>();
     let all = |column: Column, shift_s: fn(&RawReadings) -> i64| {
         let known = pieces.iter().any(|piece| column(&piece.parsed.readings).is_some());
         known.then(|| {

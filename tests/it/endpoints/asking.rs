@@ -5,7 +5,7 @@ use std::time::Duration;
 use dipcast::config::Config;
 use dipcast::service::records::{FetchedWeather, Options};
 use dipcast::service::{
-    Clock, DeviceChoice, EndpointOrder, Place, PredictError, PredictionOrder, SourceTrouble, SpanOrder, Weather,
+    Clock, DeviceChoice, EndpointOrder, PredictError, PredictionOrder, Site, SourceTrouble, SpanOrder, Weather,
     WeatherChecks, WeatherSource,
 };
 
@@ -41,7 +41,7 @@ pub fn weather(config: &Config) -> Weather {
 pub fn order(source: &str, from_unix_s: i64, hours: i64) -> PredictionOrder {
     PredictionOrder {
         device: DeviceChoice::Example("shelf-180".to_owned()),
-        place: Place::default(),
+        site: Site::default(),
         weather: WeatherSource::Endpoint(Box::new(EndpointOrder {
             source: source.to_owned(),
             latitude_deg: 50.0,

@@ -1,5 +1,6 @@
 //! A stand-in for a weather service on 127.0.0.1 that can misbehave in every way a network allows.
 
+use std::sync::atomic::{AtomicUsize, Ordering};
 use std::sync::{Arc, Mutex};
 
 use tokio::io::{AsyncReadExt, AsyncWriteExt};
@@ -85,6 +86,14 @@ type Script = Box<dyn Fn(usize, &Seen) -> Reply + Send + Sync>;
 pub struct StandIn {
     pub url: String,
     seen: Arc<Mutex<Vec<Seen>>>,
+    at_once: Arc<AtOnce>,
+}
+
+/// How many questions are being answered, and the most there ever were.
+#[derive(Default)]
+struct AtOnce {
+    now: AtomicUsize,
+    most: AtomicUsize,
 }
 
 impl StandIn {
@@ -93,12 +102,19 @@ impl StandIn {
         let url = format!("http://{}/weather", listener.local_addr().unwrap());
         let seen: Arc<Mutex<Vec<Seen>>> = Arc::default();
         let (noted, script) = (Arc::clone(&seen), Arc::new(Box::new(script) as Script));
+        let at_once: Arc<AtOnce> = Arc::default();
+        let counted = Arc::clone(&at_once);
         tokio::spawn(async move {
             while let Ok((stream, _)) = listener.accept().await {
-                tokio::spawn(serve(stream, Arc::clone(&noted), Arc::clone(&script)));
+                tokio::spawn(serve(
+                    stream,
+                    Arc::clone(&noted),
+                    Arc::clone(&script),
+                    Arc::clone(&counted),
+                ));
             }
         });
-        Self { url, seen }
+        Self { url, seen, at_once }
     }
 
     /// These replies one after another, the last one again and again.
@@ -106,20 +122,33 @@ impl StandIn {
         Self::start(move |number, _| replies[number.min(replies.len() - 1)].clone()).await
     }
 
+    /// Most questions that were ever being answered at once.
+    pub fn most_at_once(&self) -> usize {
+        self.at_once.most.load(Ordering::SeqCst)
+    }
+
     pub fn seen(&self) -> Vec<Seen> {
         self.seen.lock().unwrap().clone()
     }
 }
 
-async fn serve(mut stream: TcpStream, noted: Arc<Mutex<Vec<Seen>>>, script: Arc<Script>) {
+async fn serve(mut stream: TcpStream, noted: Arc<Mutex<Vec<Seen>>>, script: Arc<Script>, at_once: Arc<AtOnce>) {
     let Some(seen) = head(&mut stream).await else { return };
     let number = {
         let mut noted = noted.lock().unwrap();
         noted.push(seen.clone());
         noted.len() - 1
     };
+    let now = at_once.now.fetch_add(1, Ordering::SeqCst) + 1;
+    at_once.most.fetch_max(now, Ordering::SeqCst);
+    for _ in 0..100 {
+        // Room for others to arrive meanwhile.
+        tokio::task::yield_now().await;
+    }
+    let reply_to = script(number, &seen);
+    at_once.now.fetch_sub(1, Ordering::SeqCst);
     // Whoever asked may have gone: that is no fault of the test.
-    let _ = reply(stream, script(number, &seen)).await;
+    let _ = reply(stream, reply_to).await;
 }
 
 async fn head(stream: &mut TcpStream) -> Option<Seen> {

@@ -43,9 +43,10 @@ const FORMATS: [Format; 3] = [Format::Json, Format::Csv, Format::NdJson];
 /// Predict cycles, stall hours and water
 ///
 /// One device over one series of hourly readings, sent in the request, as a CSV file in a form, or fetched by coordinates
-/// from one of `/v1/weather-sources`; in one place, or in several that are compared. Answered at once up to 200,000 hours (method `averaged`) or 2,208 hours
-/// (`resolved`), and up to 6,400,000 hours times samples with bands, all places together; beyond it 422 `too_many_hours`.
-/// `text/csv` and `application/x-ndjson` give the hours alone, of one place after the other.
+/// from one of `/v1/weather-sources`; in one place, or in several that are compared. Answered at once up to 200,000 hours
+/// (method `averaged`) or 2,208 hours (`resolved`), and up to 6,400,000 hours times samples with bands, all places
+/// together; beyond it 422 `too_many_hours`. `text/csv` and `application/x-ndjson` give the hours alone, of one place
+/// after the other.
 #[utoipa::path(
     post, path = "/v1/predictions", tag = "predictions", params(FormatQuery),
     request_body(
