@@ -7,10 +7,11 @@ use utoipa::openapi::path::Operation;
 use utoipa::openapi::{Content, OpenApi, RefOr};
 
 use crate::http::health::Health;
+use crate::http::v1::weather_sources::WeatherSourceList;
 use crate::http::v1::{evaporants::EvaporantList, example_devices::ExampleDeviceList, fluids::FluidList};
 
 /// Name, summary, text.
-const REQUESTS: [(&str, &str, &str); 2] = [
+const REQUESTS: [(&str, &str, &str); 3] = [
     (
         "own_device",
         "A device of your own and a day of readings, in an invented shop",
@@ -20,6 +21,11 @@ const REQUESTS: [(&str, &str, &str); 2] = [
         "example_device",
         "The shortest request: an example device and six hours",
         include_str!("../../../openapi/examples/shortest.json"),
+    ),
+    (
+        "by_coordinates",
+        "Weather of a place by its coordinates, from the built-in source, with no network",
+        include_str!("../../../openapi/examples/by-coordinates.json"),
     ),
 ];
 
@@ -63,6 +69,7 @@ pub(super) fn add(document: &mut OpenApi) {
         ("/v1/fluids", first_of(json!(FluidList::all()))),
         ("/v1/evaporants", first_of(json!(EvaporantList::all()))),
         ("/v1/example-devices", first_of(json!(ExampleDeviceList::all()))),
+        ("/v1/weather-sources", first_of(json!(WeatherSourceList::built_in()))),
     ];
     for (path, value) in tables {
         add_to_get(document, path, "The first of the list", value);

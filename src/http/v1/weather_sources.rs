@@ -21,6 +21,15 @@ pub struct WeatherSourceList {
     pub items: Vec<WeatherSourceItem>,
 }
 
+impl WeatherSourceList {
+    /// The built-in source alone: the same in every service.
+    pub fn built_in() -> Self {
+        Self {
+            items: vec![(&SourceReport::built_in()).into()],
+        }
+    }
+}
+
 /// A source of weather by coordinates.
 #[derive(Debug, Serialize, ToSchema)]
 pub struct WeatherSourceItem {

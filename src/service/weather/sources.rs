@@ -34,6 +34,18 @@ pub struct SourceReport {
     pub budget_left: Option<BudgetLeft>,
 }
 
+impl SourceReport {
+    /// Of the built-in source: always ready.
+    pub fn built_in() -> Self {
+        Self {
+            facts: &FIXTURE,
+            state: SourceState::Ready,
+            past: Past::default(),
+            budget_left: None,
+        }
+    }
+}
+
 /// Whether a source can be asked.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub enum SourceState {
@@ -122,13 +134,7 @@ impl Sources {
 
     /// Each with its state.
     pub(super) fn reports(&self) -> Vec<SourceReport> {
-        let built_in = SourceReport {
-            facts: &FIXTURE,
-            state: SourceState::Ready,
-            past: Past::default(),
-            budget_left: None,
-        };
-        std::iter::once(built_in)
+        std::iter::once(SourceReport::built_in())
             .chain(self.0.iter().map(Listed::report))
             .collect()
     }
