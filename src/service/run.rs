@@ -3,7 +3,9 @@
 use std::time::Instant;
 
 use super::places::{Abandoned, Places};
-use super::records::{Assumption, Caution, Definition, Derived, Fault, HourlySeries, Method, Prediction, WeatherFault};
+use super::records::{
+    Assumption, Caution, Definition, Derived, Fault, HourlySeries, Method, Place, Prediction, WeatherFault,
+};
 use super::{
     DeviceChoice, HourLimit, OrderFault, PlaceOutcome, PredictError, PredictionOrder, PredictionReport, StallPoint,
     WeatherSource, example, examples,
@@ -281,6 +283,7 @@ fn outcome(
 ) -> PlaceOutcome {
     let assumptions = [
         &known.assumptions,
+        &fetched_at_device(order, place),
         &series.assumptions,
         &air.assumptions,
         &prediction.assumptions,
@@ -293,6 +296,20 @@ fn outcome(
         moisture_rule: air.moisture_rule,
         prediction,
     }
+}
+
+/// A weather service knows the air outdoors; taken as the air at a device it has to be said.
+fn fetched_at_device(order: &PredictionOrder, place: usize) -> Vec<Assumption> {
+    let at_device = matches!(order.site.places[place].place, Place::AtDevice(_));
+    let said = Assumption::new(
+        "place",
+        "the fetched weather is the air at the device",
+        "everything: it is the air outdoors; give `place` (outdoors, room, case) if the device does not stand in it",
+    );
+    (at_device && order.weather.fetched().is_some())
+        .then_some(said)
+        .into_iter()
+        .collect()
 }
 
 /// Both lists in one, nothing twice, the most urgent first.

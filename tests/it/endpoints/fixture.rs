@@ -87,6 +87,18 @@ async fn the_example_runs_and_comes_as_csv_too() {
     assert_eq!(table.text().matches("\r\n").count(), 1 + 7 * 24);
 }
 
+#[tokio::test]
+async fn weather_from_outdoors_taken_as_the_air_at_the_device_is_said() {
+    let said = |answer: Value| {
+        let assumptions = answer["assumptions"].as_array().unwrap().clone();
+        assumptions.iter().any(|assumption| assumption["what"] == "place")
+    };
+    let mut request: Value = serde_json::from_str(&example("by-coordinates.json")).unwrap();
+    assert!(!said(predict(&service(), &request).await.json()));
+    request.as_object_mut().unwrap().remove("place");
+    assert!(said(predict(&service(), &request).await.json()));
+}
+
 /// What is wrong, where it is pointed at, and by which code.
 #[tokio::test]
 async fn every_wrong_way_of_asking_is_named() {
