@@ -10,8 +10,6 @@ start_server() {
     base=http://127.0.0.1:$port
     # No outbound requests, no file: only the built-in source of weather.
     DIPCAST__STORE__FILE="" DIPCAST__WEATHER__NASA_POWER__ENABLED=false \
-        # Nothing is asked of the world, and what is kept stays out of the checkout.
-    DIPCAST__WEATHER__NASA_POWER__ENABLED=false DIPCAST__STORE__FILE=target/steps/dipcast.db \
         "$binary" serve --bind "127.0.0.1:$port" > "$server_log" 2>&1 &
     server_pid=$!
     for _ in $(seq 100); do
