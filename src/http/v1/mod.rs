@@ -24,6 +24,19 @@ macro_rules! mirror {
     };
 }
 
+/// The one value of the field that tells the alternatives of a union apart.
+macro_rules! tag {
+    ($name:ident, $variant:ident, $text:tt) => {
+        #[doc = concat!("Tag `", $text, "`.")]
+        #[derive(Debug, Clone, Copy, serde::Serialize, serde::Deserialize, utoipa::ToSchema)]
+        pub enum $name {
+            #[doc = concat!("`", $text, "`")]
+            #[serde(rename = $text)]
+            $variant,
+        }
+    };
+}
+
 /// A device as sent and as shown.
 pub mod device;
 /// `GET /v1/evaporants`

@@ -65,18 +65,6 @@ pub struct MoistureFieldSurvey {
     pub rule: FieldSurveyRule,
 }
 
-macro_rules! tag {
-    ($name:ident, $variant:ident, $text:tt) => {
-        #[doc = concat!("Tag of the rule `", $text, "`.")]
-        #[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema)]
-        pub enum $name {
-            #[doc = concat!("`", $text, "`")]
-            #[serde(rename = $text)]
-            $variant,
-        }
-    };
-}
-
 tag!(NoneRule, None, "none");
 tag!(GivenExcessRule, GivenExcess, "given_excess");
 tag!(Iso13788Rule, Iso13788, "iso_13788");

@@ -44,18 +44,6 @@ pub enum CaseSurroundings {
     Room(Box<PlaceRoom>),
 }
 
-macro_rules! tag {
-    ($name:ident, $variant:ident, $text:tt) => {
-        #[doc = concat!("Tag of a place of the kind `", $text, "`.")]
-        #[derive(Debug, Clone, Copy, Serialize, Deserialize, ToSchema)]
-        pub enum $name {
-            #[doc = concat!("`", $text, "`")]
-            #[serde(rename = $text)]
-            $variant,
-        }
-    };
-}
-
 tag!(AtDeviceKind, AtDevice, "at_device");
 tag!(OutdoorsKind, Outdoors, "outdoors");
 tag!(RoomKind, Room, "room");

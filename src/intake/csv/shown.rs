@@ -102,25 +102,27 @@ fn without_fraction(text: &[u8]) -> &[u8] {
     }
 }
 
+/// Names of the months, in the order of the year; any beginning of three letters or more stands for one.
+pub(super) const MONTHS: [&str; 12] = [
+    "january",
+    "february",
+    "march",
+    "april",
+    "may",
+    "june",
+    "july",
+    "august",
+    "september",
+    "october",
+    "november",
+    "december",
+];
+
 fn month_name(text: &[u8]) -> Option<(i64, &[u8])> {
-    const NAMES: [&str; 12] = [
-        "january",
-        "february",
-        "march",
-        "april",
-        "may",
-        "june",
-        "july",
-        "august",
-        "september",
-        "october",
-        "november",
-        "december",
-    ];
     let length = text.iter().take_while(|b| b.is_ascii_alphabetic()).count();
     let word = text[..length].to_ascii_lowercase();
     let fits = |name: &&str| length >= 3 && name.as_bytes().starts_with(&word);
-    let month = NAMES.iter().position(fits)? as i64 + 1;
+    let month = MONTHS.iter().position(fits)? as i64 + 1;
     Some((month, text[length..].strip_prefix(b".").unwrap_or(&text[length..])))
 }
 

@@ -2,7 +2,7 @@
 
 use crate::intake::csv::layout::Clock;
 use crate::intake::csv::pattern::Pattern;
-use crate::intake::csv::shown::{Shown, read_parts, read_rfc3339};
+use crate::intake::csv::shown::{MONTHS, Shown, read_parts, read_rfc3339};
 
 /// One way to read the times of a file.
 #[derive(Debug, Clone, PartialEq)]
@@ -205,21 +205,7 @@ fn year_of(digits: usize) -> Option<&'static str> {
 }
 
 fn is_month(word: &str) -> bool {
-    let names = [
-        "january",
-        "february",
-        "march",
-        "april",
-        "may",
-        "june",
-        "july",
-        "august",
-        "september",
-        "october",
-        "november",
-        "december",
-    ];
-    word.len() >= 3 && names.iter().any(|name| name.starts_with(&word.to_lowercase()))
+    word.len() >= 3 && MONTHS.iter().any(|name| name.starts_with(&word.to_lowercase()))
 }
 
 /// The pattern of the time of day behind a date, with the sign between them; empty for a date that holds it already.

@@ -33,38 +33,26 @@ fn question(code: &'static str, needed: bool, text: String, candidates: Vec<Cand
 /// Nothing in the header speaks of the air temperature.
 pub(super) fn missing_temperature(choices: &[Choice]) -> Question {
     let text = "expected a column of the air temperature; found none by its name. A bare letter such as T counts only with a unit.";
-    let candidates = open(choices).map(|choice| {
-        let inside = json!({"column": choice.reference, "unit": "°C"});
-        Candidate::hint(
-            format!("{:?} (it holds {})", choice.reference, range(choice)),
-            &column_hint(Quantity::AirTemperature, inside),
-        )
-    });
-    Question {
-        about: Some(Quantity::AirTemperature),
-        column: Some("air_temperature".into()),
-        ..question(
-            "missing_column",
-            true,
-            text.into(),
-            candidates.take(MOST_CANDIDATES).collect(),
-        )
-    }
+    missing(choices, Quantity::AirTemperature, ("air_temperature", "°C"), text)
 }
 
 /// Nothing in the header speaks of humidity.
 pub(super) fn missing_humidity(choices: &[Choice]) -> Question {
     let text = "expected a column of relative humidity, dew point or wet bulb; found none by its name. Bare letters such as RH count only with a unit.";
+    missing(choices, Quantity::RelativeHumidity, ("relative_humidity", "%"), text)
+}
+
+fn missing(choices: &[Choice], quantity: Quantity, (name, unit): (&str, &str), text: &str) -> Question {
     let candidates = open(choices).map(|choice| {
-        let inside = json!({"column": choice.reference, "unit": "%"});
+        let inside = json!({"column": choice.reference, "unit": unit});
         Candidate::hint(
             format!("{:?} (it holds {})", choice.reference, range(choice)),
-            &column_hint(Quantity::RelativeHumidity, inside),
+            &column_hint(quantity, inside),
         )
     });
     Question {
-        about: Some(Quantity::RelativeHumidity),
-        column: Some("relative_humidity".into()),
+        about: Some(quantity),
+        column: Some(name.into()),
         ..question(
             "missing_column",
             true,
